@@ -12,7 +12,7 @@ import ast
 import operator
 import warnings
 from collections.abc import Callable, Mapping
-from typing import Any
+from typing import Any, NoReturn
 
 from .predicates import FUNCTIONS, PREDICATES
 from .strict import BadClaim
@@ -25,9 +25,7 @@ MOST_CHARACTERS, MOST_NODES, MOST_LEVELS = 2000, 500, 40
 MOST_LITERAL, MOST_RESULT = 10**12, 2**53
 
 
-def _bounded(value: int) -> int:
-    if -MOST_RESULT <= value <= MOST_RESULT:
-        return value
+def _refuse_result() -> NoReturn:
     raise BadClaim("a result is beyond 2^53")
 
 
@@ -35,7 +33,7 @@ def _power(base: int, exponent: int) -> int:
     if exponent < 0:
         raise BadClaim("a negative exponent")
     if abs(base) > 1 and exponent > 53:
-        raise BadClaim("a result is beyond 2^53")
+        _refuse_result()
     return int(base**exponent)
 
 
@@ -145,7 +143,11 @@ class _Compiler:
             raise BadClaim(f"{type(node.op).__name__} is not part of the language")
         left = self.want(INTEGER, node.left, level)
         right = self.want(INTEGER, node.right, level)
-        return INTEGER, lambda values: _bounded(apply(left(values), right(values)))
+        return INTEGER, lambda values: (
+            result
+            if -MOST_RESULT <= (result := apply(left(values), right(values))) <= MOST_RESULT
+            else _refuse_result()
+        )
 
     def on_BoolOp(self, node: ast.BoolOp, level: int) -> tuple[str, Evaluate]:
         parts = [self.want(TRUTH, part, level) for part in node.values]

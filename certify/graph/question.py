@@ -132,3 +132,7 @@ def build_path_question(
         apex=apex,
         absent=inner.absent or ends.absent,
     )
+
+
+BUILDERS = {"hamiltonian-cycle": build_cycle_question, "hamiltonian-path": build_path_question}
+"""How each structure becomes a question; a new structure is added here."""

@@ -1,0 +1,212 @@
+"""The one flow: claim -> graphs -> search -> evidence -> checker.
+
+Nothing leaves this module as an answer unless the checker, through its front door
+and on the very bytes that are to be stored, has said that the evidence holds.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Collection, Iterator
+from dataclasses import dataclass
+from pathlib import Path
+
+from certify.checker import Verdict, check_line
+from certify.claim.claim import Claim, count_instances, read_claim
+from certify.claim.instances import name_key
+from certify.errors import CertifyError, ContradictionError, InputError
+from certify.evidence.record import Record, read_record, write_record
+from certify.evidence.store import Store, claim_name, name_of
+from certify.graph.build import Instance, build_question, instances
+from certify.graph.files import format_of, read_sources
+from certify.graph.graph import Graph
+from certify.graph.question import BUILDERS, Question
+from certify.search.budget import Budget
+from certify.search.ladder import KINDS, settle
+
+DEFAULT_BUDGET = 60.0
+"""Seconds for one instance."""
+
+
+class UnsoundError(CertifyError):
+    """The search and the checker disagree: a fault of the program, never an answer."""
+
+
+@dataclass(frozen=True)
+class Outcome:
+    """What came out for one instance.
+
+    record: what is stored. verdict: what the checker said of these bytes.
+    stored: it was there already and only checked again.
+    """
+
+    record: Record
+    verdict: Verdict
+    graph: Graph
+    question: Question
+    stored: bool = False
+
+    @property
+    def name(self) -> str:
+        """Return the instance as messages write it."""
+        return name_key(self.record.key)
+
+    @property
+    def contradicts(self) -> bool:
+        """Return whether the evidence shows the opposite of what is claimed."""
+        return self.verdict.holds and not self.verdict.accepted
+
+
+@dataclass(frozen=True)
+class Run:
+    """A claim that is about to be proved; iterate over `outcomes` to do it."""
+
+    claim: Claim
+    folder: Path
+    count: int | None
+    outcomes: Iterator[Outcome]
+
+
+def prove(
+    claim_path: Path | str,
+    *,
+    out: Path | str | None = None,
+    budget: float = DEFAULT_BUDGET,
+    kinds: Collection[str] = KINDS,
+    redo: Collection[str] = (),
+) -> Run:
+    """Find and store evidence for every instance of a claim.
+
+    out: the evidence folder; the claim's own folder if None. budget: seconds for
+    each instance. redo: instances to be searched again although evidence is
+    stored, by their text (`n=18`, `m=3,n=4`, `17`), or `all`.
+    Errors: InputError and below, before anything is written or with it undone.
+    """
+    path = Path(claim_path)
+    claim = read_claim(path)
+    folder = Path(out) if out is not None else path.parent
+    return Run(
+        claim, folder, count_instances(claim), _prove(claim, path, folder, budget, kinds, set(redo))
+    )
+
+
+def _prove(
+    claim: Claim, path: Path, folder: Path, budget: float, kinds: Collection[str], redo: set[str]
+) -> Iterator[Outcome]:
+    with Store(folder, claim, path) as store:
+        stored = store.read_stored()
+        try:
+            unknown = redo - {"all"}
+            for instance in instances(claim, path.parent):
+                unknown.discard(instance.name)
+                again = "all" in redo or instance.name in redo
+                line = None if again else stored.get(name_of(instance.key))
+                outcome = _take_stored(claim, instance, line, store) if line else None
+                if outcome is None:
+                    question = build_question(claim, instance.key, instance.graph)
+                    outcome = _settle(claim.raw, instance, question, budget, kinds)
+                store.add(outcome.record, stored=outcome.stored)
+                yield outcome
+            if unknown:
+                raise InputError(
+                    f"{path}: there is no instance {min(unknown)}; "
+                    "--redo takes an instance such as n=18, or all"
+                )
+        except InputError:
+            store.discard()
+            raise
+        store.finish()
+
+
+def _take_stored(claim: Claim, instance: Instance, line: bytes, store: Store) -> Outcome | None:
+    """Return what is stored for an instance if the checker still says that it holds."""
+    try:
+        record = read_record(line, store.read_files)
+    except (ValueError, KeyError, TypeError):
+        return None
+    verdict = _check(claim.raw, instance, record)
+    if not verdict.holds:
+        return None  # open, or rejected: to be searched again
+    question = build_question(claim, instance.key, instance.graph)
+    return Outcome(record, verdict, instance.graph, question, stored=True)
+
+
+def _settle(
+    claim: bytes, instance: Instance, question: Question, budget: float, kinds: Collection[str]
+) -> Outcome:
+    """Search, write the record, and have it checked; what the budget does not settle is open."""
+    evidence = settle(question, budget=Budget.of(budget), kinds=kinds)
+    record = write_record(instance.key, instance.graph, evidence)
+    verdict = _check(claim, instance, record)
+    if not (verdict.holds or verdict.is_open):
+        raise UnsoundError(
+            f"instance {instance.name}: the search found {record.kind} evidence, and the checker "
+            f"rejects it: {verdict.reason}\n  this is a fault of the program; nothing was stored"
+        )
+    return Outcome(record, verdict, instance.graph, question)
+
+
+def _check(claim: bytes, instance: Instance, record: Record) -> Verdict:
+    source = instance.source or b""
+    return check_line(claim, instance.key, record.line, record.files, source)
+
+
+def decide_file(
+    path: Path | str,
+    structure: str,
+    *,
+    form: str | None = None,
+    budget: float = DEFAULT_BUDGET,
+    kinds: Collection[str] = KINDS,
+) -> Iterator[Outcome]:
+    """Answer the question for each graph of a file, without a claim.
+
+    form: the format of the file; its ending decides if None. budget: seconds for
+    each graph. Yields the outcomes in the order of the file; the evidence is
+    checked as that of a survey over this list.
+    Errors: GraphFileError, saying where.
+    """
+    file = Path(path)
+    form = form or format_of(file)
+    for position, (graph, source) in enumerate(read_sources(file, form), 1):
+        instance = Instance(position, graph, source)
+        yield decide_instance(instance, structure, form, budget=budget, kinds=kinds)
+
+
+def decide_instance(
+    instance: Instance,
+    structure: str,
+    form: str,
+    *,
+    budget: float = DEFAULT_BUDGET,
+    kinds: Collection[str] = KINDS,
+) -> Outcome:
+    """Answer the question for one graph, given with its text in a format of lists."""
+    claim = f'structure = "{structure}"\n[graph]\nlist = "graphs"\nformat = "{form}"\n'
+    build = BUILDERS[structure]
+    return _settle(claim.encode(), instance, build(instance.graph), budget, kinds)
+
+
+def find_outcome(folder: Path, name: str) -> Outcome:
+    """Read the stored evidence of one instance and have it checked.
+
+    name: the instance as messages write it: `n=18`, `m=3,n=4`, `17`.
+    Errors: InputError when there is no such instance or no evidence; a
+    ContradictionError when the checker rejects what is stored.
+    """
+    claim_path = folder / claim_name(folder)
+    claim = read_claim(claim_path)
+    store = Store(folder, claim, claim_path)
+    for instance in instances(claim, folder):
+        if instance.name == name.replace(" ", ""):
+            line = store.read_stored().get(name_of(instance.key))
+            outcome = _take_stored(claim, instance, line, store) if line else None
+            if outcome is None:
+                raise ContradictionError(
+                    f"{folder}: the evidence stored for {instance.name} is missing or rejected\n"
+                    f"  next: certify check {folder}"
+                )
+            return outcome
+    raise InputError(f"{claim_path}: there is no instance {name!r}; write it such as {FORMS}")
+
+
+FORMS = "n=18, m=3,n=4, or 17 for a graph of a list"
