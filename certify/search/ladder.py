@@ -1,8 +1,18 @@
 """The ladder: which finder runs when, and with which share of the budget.
 
-Every finder has one signature: a question and a budget in, evidence or a
-Hamiltonian cycle or nothing out. The rungs are tried from the top; the first that
-settles the question ends it, as the kinds above read shorter than those below.
+The rungs are tried from the top, and the first that settles the question ends the
+search: kinds further up read shorter than those further down, and cost less when
+they fail. Each share is of what is left of the budget.
+
+    rung          kinds it gives       share   because
+    obstruction   obstruction           10 %   a look at the graph
+    witness       witness               10 %   a bounded number of steps
+    counting      counting              20 %   one linear program
+    few cases     cases                 20 %   trees a reader can follow
+    thin sweep    sweep, witness        20 %   long thin graphs, at once
+    clauses       clauses, witness      60 %   the strongest on small dense graphs
+    wide sweep    sweep, witness        60 %   what needs memory
+    many cases    cases                100 %   the last resort
 """
 
 from __future__ import annotations
@@ -14,42 +24,118 @@ from certify.evidence.base import Evidence
 from certify.evidence.witness import Witness
 from certify.graph.question import Question
 from certify.search.budget import Budget
+from certify.search.cases import find_cases
 from certify.search.clauses import find_clauses
+from certify.search.counting import find_counting
 from certify.search.obstruction import find_obstruction
+from certify.search.sweep import find_sweep
+from certify.search.symmetry import find_symmetries
 from certify.search.witness import find_witness, write_witness
 
-Finder = Callable[..., Evidence | tuple[int, ...] | None]
+KINDS = ("witness", "obstruction", "counting", "cases", "sweep", "clauses")
+
+READABLE_LEAVES = 12
+MOST_LEAVES = 5_000
+THIN_MEMORY = 1 << 26
+
+Found = Evidence | tuple[int, ...] | None
+
+
+@dataclass(frozen=True)
+class Search:
+    """What a rung is given beside the question: limits, and how much effort is wanted.
+
+    memory: bytes a sweep may take. shortest: spend time on a shorter reason.
+    """
+
+    budget: Budget
+    memory: int = 1 << 30
+    shortest: bool = False
+
+
+def _obstruction(question: Question, search: Search) -> Found:
+    return find_obstruction(question, budget=search.budget)
+
+
+def _witness(question: Question, search: Search) -> Found:
+    return find_witness(question, budget=search.budget)
+
+
+def _counting(question: Question, search: Search) -> Found:
+    return find_counting(question, budget=search.budget, shortest=search.shortest)
+
+
+def _few_cases(question: Question, search: Search) -> Found:
+    return find_cases(
+        question, budget=search.budget, most_leaves=READABLE_LEAVES, shortest=search.shortest
+    )
+
+
+def _many_cases(question: Question, search: Search) -> Found:
+    return find_cases(question, budget=search.budget, most_leaves=MOST_LEAVES)
+
+
+def _thin_sweep(question: Question, search: Search) -> Found:
+    memory = min(search.memory, THIN_MEMORY)
+    return find_sweep(question, budget=search.budget, memory=memory)
+
+
+def _wide_sweep(question: Question, search: Search) -> Found:
+    return find_sweep(question, budget=search.budget, memory=search.memory)
+
+
+def _clauses(question: Question, search: Search) -> Found:
+    mirrors = find_symmetries(question).elements[1:]
+    return find_clauses(question, budget=search.budget, mirrors=mirrors)
 
 
 @dataclass(frozen=True)
 class Rung:
-    """A finder, the kinds of evidence it can give, and its share of what is left."""
+    """A finder, the kinds it can give, and its share of what is left of the budget."""
 
-    kinds: tuple[str, ...]
-    find: Finder
+    kinds: frozenset[str]
+    find: Callable[[Question, Search], Found]
     share: float
 
 
 LADDER = (
-    Rung(("obstruction",), find_obstruction, 0.1),
-    Rung(("witness",), find_witness, 0.1),
-    Rung(("clauses", "witness"), find_clauses, 1.0),
+    Rung(frozenset({"obstruction"}), _obstruction, 0.1),
+    Rung(frozenset({"witness"}), _witness, 0.1),
+    Rung(frozenset({"counting"}), _counting, 0.2),
+    Rung(frozenset({"cases"}), _few_cases, 0.2),
+    Rung(frozenset({"sweep", "witness"}), _thin_sweep, 0.2),
+    Rung(frozenset({"clauses", "witness"}), _clauses, 0.6),
+    Rung(frozenset({"sweep", "witness"}), _wide_sweep, 0.6),
+    Rung(frozenset({"cases"}), _many_cases, 1.0),
 )
-KINDS = ("witness", "obstruction", "counting", "cases", "sweep", "clauses")
 
 
 def settle(
-    question: Question, *, budget: Budget, kinds: Collection[str] = KINDS
+    question: Question,
+    *,
+    budget: Budget,
+    kinds: Collection[str] = KINDS,
+    memory: int = 1 << 30,
+    shortest: bool = False,
 ) -> Evidence | None:
-    """Return evidence that answers the question; None when the budget left it open."""
-    if question.is_one_vertex_path:
-        return Witness((0,))
+    """Return evidence that answers the question; None when the limits leave it open.
+
+    kinds: only these are looked for. shortest: go on down the readable rungs after
+    a refutation is found, and keep the one with the least reading length.
+    """
+    best: Evidence | None = None
     for rung in LADDER:
-        if not set(rung.kinds) & set(kinds):
+        if not rung.kinds & set(kinds) or budget.spent:
             continue
-        found = rung.find(question, budget=budget.share(rung.share))
-        if isinstance(found, tuple):
-            return write_witness(question, found)
-        if found is not None:
-            return found
-    return None
+        if best is not None and rung.kinds & {"sweep", "clauses"}:
+            break
+        search = Search(budget.share(rung.share), memory, shortest)
+        found = rung.find(question, search)
+        evidence = write_witness(question, found) if isinstance(found, tuple) else found
+        if evidence is None or evidence.kind not in kinds:
+            continue
+        if isinstance(evidence, Witness) or not shortest:
+            return evidence
+        if best is None or evidence.length < best.length:
+            best = evidence
+    return best
