@@ -17,6 +17,7 @@ they fail. Each share is of what is left of the budget.
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable, Collection
 from dataclasses import dataclass
 
@@ -35,6 +36,7 @@ from certify.search.witness import find_witness, write_witness
 KINDS = ("witness", "obstruction", "counting", "cases", "sweep", "clauses")
 
 READABLE_LEAVES = 12
+READABLE_EFFORT = 10_000
 MOST_LEAVES = 5_000
 THIN_MEMORY = 1 << 26
 
@@ -67,7 +69,11 @@ def _counting(question: Question, search: Search) -> Found:
 
 def _few_cases(question: Question, search: Search) -> Found:
     return find_cases(
-        question, budget=search.budget, most_leaves=READABLE_LEAVES, shortest=search.shortest
+        question,
+        budget=search.budget,
+        most_leaves=READABLE_LEAVES,
+        most_effort=math.inf if search.shortest else READABLE_EFFORT,
+        shortest=search.shortest,
     )
 
 
