@@ -18,17 +18,18 @@ from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn, T
 from certify.checker import check_folder
 from certify.checker.__main__ import check_and_print
 from certify.errors import CertifyError, ContradictionError, InputError, OpenError
-from certify.flow import DEFAULT_BUDGET, Outcome, decide_file, find_outcome, prove
+from certify.flow import Outcome, decide_file, prove
 from certify.graph.question import BUILDERS
-from certify.report.explain import render_reason
+from certify.interface import explain
+from certify.report.lasting import find_lasting
 from certify.report.referee import PROGRAM, ask_referee, describe, find_referee
 from certify.report.table import Row, render_table
-from certify.search.ladder import KINDS
+from certify.search.ladder import KINDS, Limits
 
 budget_option = click.option(
     "--budget",
     type=click.FloatRange(min=0, min_open=True),
-    default=DEFAULT_BUDGET,
+    default=Limits.seconds,
     show_default=True,
     metavar="SECONDS",
     help="Time for each instance; what it does not settle is left open.",
@@ -63,6 +64,17 @@ def commands() -> None:
     "--kinds", metavar="KIND,...", help=f"Use only these kinds of evidence: {', '.join(KINDS)}."
 )
 @click.option(
+    "--shortest", is_flag=True, help="Spend the time on making each reason shorter to read."
+)
+@click.option(
+    "--memory",
+    type=click.IntRange(min=16),
+    default=Limits.memory >> 20,
+    show_default=True,
+    metavar="MIB",
+    help="Memory that the sweep of one instance may take.",
+)
+@click.option(
     "--redo",
     multiple=True,
     metavar="INSTANCE",
@@ -74,15 +86,20 @@ def prove_command(
     out: Path | None,
     budget: float,
     kinds: str | None,
+    shortest: bool,
+    memory: int,
     redo: tuple[str, ...],
     as_json: bool,
 ) -> None:
     """Find evidence for every instance of CLAIM, have it checked, and store it."""
-    run = prove(claim, out=out, budget=budget, kinds=_read_kinds(kinds), redo=redo)
+    limits = Limits(budget, memory << 20, _read_kinds(kinds), shortest)
+    run = prove(claim, out=out, limits=limits, redo=redo)
     outcomes = list(_show(run.outcomes, run.count, as_json=as_json))
     if not as_json:
         rows = [Row(o.record.key, o.record.answer, o.record.kind, o.contradicts) for o in outcomes]
         click.echo(render_table(rows))
+        for lasting in find_lasting(o.settled for o in outcomes):
+            click.echo(f"one reason for {lasting.render()}")
         click.echo(f"evidence: {run.folder}")
     raise_for(outcomes, run.claim.check_counts(o.record.answer for o in outcomes))
 
@@ -102,7 +119,7 @@ def decide_command(
     graphfile: Path, structure: str, form: str | None, budget: float, as_json: bool
 ) -> None:
     """Answer a quick question about each graph in GRAPHFILE; no claim needed."""
-    outcomes = decide_file(graphfile, structure, form=form, budget=budget)
+    outcomes = decide_file(graphfile, structure, form=form, limits=Limits(budget))
     raise_for(list(_show(outcomes, None, as_json=as_json)), None)
 
 
@@ -141,15 +158,14 @@ def _ask_referee(folder: Path, *, as_json: bool) -> int:
 @click.argument("instance")
 def explain_command(folder: Path, instance: str) -> None:
     """Print the reason for one INSTANCE (n=18, m=3,n=4 or 17) in plain English."""
-    outcome = find_outcome(folder, instance)
-    click.echo(render_reason(outcome.graph, outcome.question, outcome.record.content))
+    click.echo(explain(folder, instance))
 
 
-def _read_kinds(text: str | None) -> tuple[str, ...]:
+def _read_kinds(text: str | None) -> frozenset[str]:
     if text is None:
-        return KINDS
-    kinds = tuple(part.strip() for part in text.split(","))
-    for kind in kinds:
+        return Limits.kinds
+    kinds = frozenset(part.strip() for part in text.split(","))
+    for kind in sorted(kinds):
         if kind not in KINDS:
             raise InputError(f"--kinds: {kind!r} is none of {', '.join(KINDS)}")
     return kinds

@@ -6,25 +6,24 @@ and on the very bytes that are to be stored, has said that the evidence holds.
 
 from __future__ import annotations
 
+import json
 from collections.abc import Collection, Iterator
 from dataclasses import dataclass
 from pathlib import Path
 
 from certify.checker import Verdict, check_line
 from certify.claim.claim import Claim, count_instances, read_claim
-from certify.claim.instances import name_key
+from certify.claim.instances import Key, name_key
 from certify.errors import CertifyError, ContradictionError, InputError
+from certify.evidence.carry import carry_over
 from certify.evidence.record import Record, read_record, write_record
 from certify.evidence.store import Store, claim_name, name_of
-from certify.graph.build import Instance, build_question, instances
+from certify.graph.build import Instance, build_graph, build_question, instances
 from certify.graph.files import format_of, read_sources
 from certify.graph.graph import Graph
 from certify.graph.question import BUILDERS, Question
-from certify.search.budget import Budget
-from certify.search.ladder import KINDS, settle
-
-DEFAULT_BUDGET = 60.0
-"""Seconds for one instance."""
+from certify.report.lasting import Lasting, Settled, find_lasting_around
+from certify.search.ladder import DEFAULTS, Limits, settle
 
 
 class UnsoundError(CertifyError):
@@ -51,6 +50,11 @@ class Outcome:
         return name_key(self.record.key)
 
     @property
+    def settled(self) -> Settled:
+        """Return what is told of the instance."""
+        return Settled(self.record.content, self.graph)
+
+    @property
     def contradicts(self) -> bool:
         """Return whether the evidence shows the opposite of what is claimed."""
         return self.verdict.holds and not self.verdict.accepted
@@ -70,30 +74,29 @@ def prove(
     claim_path: Path | str,
     *,
     out: Path | str | None = None,
-    budget: float = DEFAULT_BUDGET,
-    kinds: Collection[str] = KINDS,
+    limits: Limits = DEFAULTS,
     redo: Collection[str] = (),
 ) -> Run:
     """Find and store evidence for every instance of a claim.
 
-    out: the evidence folder; the claim's own folder if None. budget: seconds for
-    each instance. redo: instances to be searched again although evidence is
+    out: the evidence folder; the claim's own folder if None. limits: for each
+    instance. redo: instances to be searched again although evidence is
     stored, by their text (`n=18`, `m=3,n=4`, `17`), or `all`.
     Errors: InputError and below, before anything is written or with it undone.
     """
     path = Path(claim_path)
     claim = read_claim(path)
     folder = Path(out) if out is not None else path.parent
-    return Run(
-        claim, folder, count_instances(claim), _prove(claim, path, folder, budget, kinds, set(redo))
-    )
+    outcomes = _prove(claim, path, folder, limits, set(redo))
+    return Run(claim, folder, count_instances(claim), outcomes)
 
 
 def _prove(
-    claim: Claim, path: Path, folder: Path, budget: float, kinds: Collection[str], redo: set[str]
+    claim: Claim, path: Path, folder: Path, limits: Limits, redo: set[str]
 ) -> Iterator[Outcome]:
     with Store(folder, claim, path) as store:
         stored = store.read_stored()
+        last: Outcome | None = None
         try:
             unknown = redo - {"all"}
             for instance in instances(claim, path.parent):
@@ -103,7 +106,9 @@ def _prove(
                 outcome = _take_stored(claim, instance, line, store) if line else None
                 if outcome is None:
                     question = build_question(claim, instance.key, instance.graph)
-                    outcome = _settle(claim.raw, instance, question, budget, kinds)
+                    outcome = _settle(claim.raw, instance, question, limits)
+                    outcome = _keep_reason(claim.raw, instance, outcome, last) or outcome
+                last = outcome
                 store.add(outcome.record, stored=outcome.stored)
                 yield outcome
             if unknown:
@@ -130,12 +135,9 @@ def _take_stored(claim: Claim, instance: Instance, line: bytes, store: Store) ->
     return Outcome(record, verdict, instance.graph, question, stored=True)
 
 
-def _settle(
-    claim: bytes, instance: Instance, question: Question, budget: float, kinds: Collection[str]
-) -> Outcome:
-    """Search, write the record, and have it checked; what the budget does not settle is open."""
-    evidence = settle(question, budget=Budget.of(budget), kinds=kinds)
-    record = write_record(instance.key, instance.graph, evidence)
+def _settle(claim: bytes, instance: Instance, question: Question, limits: Limits) -> Outcome:
+    """Search, write the record, and have it checked; what the limits do not settle is open."""
+    record = write_record(instance.key, instance.graph, settle(question, limits))
     verdict = _check(claim, instance, record)
     if not (verdict.holds or verdict.is_open):
         raise UnsoundError(
@@ -143,6 +145,25 @@ def _settle(
             f"rejects it: {verdict.reason}\n  this is a fault of the program; nothing was stored"
         )
     return Outcome(record, verdict, instance.graph, question)
+
+
+def _keep_reason(
+    claim: bytes, instance: Instance, outcome: Outcome, last: Outcome | None
+) -> Outcome | None:
+    """Return the instance with the last one's reason, if it holds here and is no longer.
+
+    So a paper can say once what refutes several graphs in a row.
+    """
+    if last is None or outcome.record.answer != "impossible":
+        return None
+    evidence = carry_over(last.record.kind, last.record.evidence, last.graph, instance.graph)
+    if evidence is None or evidence.length > outcome.record.length:
+        return None
+    record = write_record(instance.key, instance.graph, evidence)
+    verdict = _check(claim, instance, record)
+    if not verdict.holds:
+        return None
+    return Outcome(record, verdict, instance.graph, outcome.question)
 
 
 def _check(claim: bytes, instance: Instance, record: Record) -> Verdict:
@@ -155,13 +176,12 @@ def decide_file(
     structure: str,
     *,
     form: str | None = None,
-    budget: float = DEFAULT_BUDGET,
-    kinds: Collection[str] = KINDS,
+    limits: Limits = DEFAULTS,
 ) -> Iterator[Outcome]:
     """Answer the question for each graph of a file, without a claim.
 
-    form: the format of the file; its ending decides if None. budget: seconds for
-    each graph. Yields the outcomes in the order of the file; the evidence is
+    form: the format of the file; its ending decides if None. limits: for each
+    graph. Yields the outcomes in the order of the file; the evidence is
     checked as that of a survey over this list.
     Errors: GraphFileError, saying where.
     """
@@ -169,7 +189,7 @@ def decide_file(
     form = form or format_of(file)
     for position, (graph, source) in enumerate(read_sources(file, form), 1):
         instance = Instance(position, graph, source)
-        yield decide_instance(instance, structure, form, budget=budget, kinds=kinds)
+        yield decide_instance(instance, structure, form, limits=limits)
 
 
 def decide_instance(
@@ -177,36 +197,46 @@ def decide_instance(
     structure: str,
     form: str,
     *,
-    budget: float = DEFAULT_BUDGET,
-    kinds: Collection[str] = KINDS,
+    limits: Limits = DEFAULTS,
 ) -> Outcome:
     """Answer the question for one graph, given with its text in a format of lists."""
     claim = f'structure = "{structure}"\n[graph]\nlist = "graphs"\nformat = "{form}"\n'
     build = BUILDERS[structure]
-    return _settle(claim.encode(), instance, build(instance.graph), budget, kinds)
+    return _settle(claim.encode(), instance, build(instance.graph), limits)
 
 
-def find_outcome(folder: Path, name: str) -> Outcome:
-    """Read the stored evidence of one instance and have it checked.
+def find_outcome(folder: Path, name: str) -> tuple[Outcome, Lasting | None]:
+    """Read the stored evidence of one instance, and the run with the same reason around it.
 
-    name: the instance as messages write it: `n=18`, `m=3,n=4`, `17`.
+    name: the instance as messages write it: `n=18`, `m=3,n=4`, `17`. The evidence is
+    checked before it is told.
     Errors: InputError when there is no such instance or no evidence; a
     ContradictionError when the checker rejects what is stored.
     """
     claim_path = folder / claim_name(folder)
     claim = read_claim(claim_path)
     store = Store(folder, claim, claim_path)
+    stored = store.read_stored()
+    wanted = name.replace(" ", "")
     for instance in instances(claim, folder):
-        if instance.name == name.replace(" ", ""):
-            line = store.read_stored().get(name_of(instance.key))
-            outcome = _take_stored(claim, instance, line, store) if line else None
-            if outcome is None:
-                raise ContradictionError(
-                    f"{folder}: the evidence stored for {instance.name} is missing or rejected\n"
-                    f"  next: certify check {folder}"
-                )
-            return outcome
-    raise InputError(f"{claim_path}: there is no instance {name!r}; write it such as {FORMS}")
+        if instance.name != wanted:
+            continue
+        line = stored.get(name_of(instance.key))
+        outcome = _take_stored(claim, instance, line, store) if line else None
+        if outcome is None:
+            raise ContradictionError(
+                f"{folder}: the evidence stored for {instance.name} is missing, open or rejected\n"
+                f"  next: certify check {folder}"
+            )
 
+        def look_up(key: Key) -> Settled | None:
+            other = stored.get(name_of(key))
+            if other is None or not isinstance(key, dict):
+                return None
+            return Settled(json.loads(other), build_graph(claim, key))
 
-FORMS = "n=18, m=3,n=4, or 17 for a graph of a list"
+        return outcome, find_lasting_around(outcome.settled, look_up)
+    raise InputError(
+        f"{claim_path}: there is no instance {name!r}; write n=18, m=3,n=4, "
+        "or 17 for a graph of a list"
+    )

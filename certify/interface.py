@@ -11,11 +11,13 @@ import networkx
 
 from certify.checker import FolderCheck, check_folder
 from certify.errors import InputError
-from certify.flow import DEFAULT_BUDGET, Outcome, decide_instance, find_outcome, prove
+from certify.flow import Outcome, decide_instance, find_outcome, prove
 from certify.graph.build import Instance
 from certify.graph.graph import Graph, edge_between
 from certify.graph.question import BUILDERS
 from certify.report.explain import render_reason
+from certify.report.lasting import Lasting
+from certify.search.ladder import Limits
 
 __all__ = ["Decision", "check", "decide", "explain", "prove"]
 
@@ -36,7 +38,7 @@ class Decision:
     evidence: dict[str, Any]
 
 
-def decide(graph: networkx.Graph, structure: str, *, budget: float = DEFAULT_BUDGET) -> Decision:
+def decide(graph: networkx.Graph, structure: str, *, budget: float = Limits.seconds) -> Decision:
     """Answer whether a graph has the structure, with evidence that was checked.
 
     graph: a networkx graph, undirected, without loops; multiple edges count once.
@@ -58,7 +60,7 @@ def decide(graph: networkx.Graph, structure: str, *, budget: float = DEFAULT_BUD
     text = networkx.to_graph6_bytes(source, header=False)
     names = tuple(map(str, nodes))
     instance = Instance(1, Graph(names, tuple(edges)), text)
-    outcome = decide_instance(instance, structure, "graph6", budget=budget)
+    outcome = decide_instance(instance, structure, "graph6", limits=Limits(seconds=budget))
     return _decision(outcome, nodes)
 
 
@@ -68,6 +70,14 @@ def _decision(outcome: Outcome, nodes: list[Hashable]) -> Decision:
     witness = tuple(nodes[v] for v in order) if order is not None else None
     reason = render_reason(outcome.graph, outcome.question, record.content)
     return Decision(record.answer, record.kind, witness, reason, record.evidence)
+
+
+def render_outcome(outcome: Outcome, lasting: Lasting | None = None) -> str:
+    """Return the reason for an outcome in plain English."""
+    record = outcome.record
+    return render_reason(
+        outcome.graph, outcome.question, record.content, record.files.__getitem__, lasting
+    )
 
 
 def check(folder: Path | str) -> FolderCheck:
@@ -80,5 +90,5 @@ def check(folder: Path | str) -> FolderCheck:
 
 def explain(folder: Path | str, instance: str) -> str:
     """Return the reason for one instance (`n=18`, `m=3,n=4`, `17`) in plain English."""
-    outcome = find_outcome(Path(folder), instance)
-    return render_reason(outcome.graph, outcome.question, outcome.record.content)
+    outcome, lasting = find_outcome(Path(folder), instance)
+    return render_outcome(outcome, lasting)

@@ -11,6 +11,7 @@ from certify.report.blocks import Block, Paragraph
 from certify.report.cases import render_cases
 from certify.report.clauses import ReadFile, render_clauses
 from certify.report.counting import render_counting
+from certify.report.lasting import Lasting
 from certify.report.obstruction import render_obstruction
 from certify.report.plain import set_plain
 from certify.report.sweep import render_sweep
@@ -19,18 +20,27 @@ from certify.report.words import Words, capital, plural
 
 
 def render_reason(
-    graph: Graph, question: Question, record: dict[str, Any], read_file: ReadFile | None = None
+    graph: Graph,
+    question: Question,
+    record: dict[str, Any],
+    read_file: ReadFile | None = None,
+    lasting: Lasting | None = None,
 ) -> str:
     """Return the reason that a record gives, in plain mathematical English.
 
     graph: the graph of the instance, with the labels that a reader knows. question:
     what the claim asks about it. record: a line of evidence.jsonl, parsed, which the
     checker has accepted. read_file: gives the bytes of a file that the record names; None
-    leaves out what only such a file says.
+    leaves out what only such a file says. lasting: the run of instances with the same
+    reason, if there is one.
     Errors: ContradictionError when the evidence does not show what it should.
     Cost: O(n + m) for each set, or node of a tree of cases, in the evidence.
     """
-    return set_plain(explain(graph, question, record, read_file))
+    blocks = explain(graph, question, record, read_file)
+    if lasting is not None:
+        said = Paragraph(f"The same reason, word for word, holds for {lasting.render()}.")
+        blocks.insert(len(blocks) - 1, said)
+    return set_plain(blocks)
 
 
 def explain(

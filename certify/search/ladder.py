@@ -18,7 +18,7 @@ they fail. Each share is of what is left of the budget.
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Collection
+from collections.abc import Callable
 from dataclasses import dataclass
 
 from certify.evidence.base import Evidence
@@ -116,31 +116,42 @@ LADDER = (
 )
 
 
-def settle(
-    question: Question,
-    *,
-    budget: Budget,
-    kinds: Collection[str] = KINDS,
-    memory: int = 1 << 30,
-    shortest: bool = False,
-) -> Evidence | None:
+@dataclass(frozen=True)
+class Limits:
+    """What the search for one instance may cost, and what it is to look for.
+
+    seconds: the budget. memory: bytes that a sweep may take. kinds: no other
+    evidence is looked for. shortest: spend the budget on a shorter reason.
+    """
+
+    seconds: float = 60.0
+    memory: int = 1 << 30
+    kinds: frozenset[str] = frozenset(KINDS)
+    shortest: bool = False
+
+
+DEFAULTS = Limits()
+
+
+def settle(question: Question, limits: Limits) -> Evidence | None:
     """Return evidence that answers the question; None when the limits leave it open.
 
-    kinds: only these are looked for. shortest: go on down the readable rungs after
-    a refutation is found, and keep the one with the least reading length.
+    With `shortest` the readable rungs are gone through to the end after a refutation
+    is found, and the one with the least reading length is kept.
     """
+    budget = Budget.of(limits.seconds)
     best: Evidence | None = None
     for rung in LADDER:
-        if not rung.kinds & set(kinds) or budget.spent:
+        if not rung.kinds & limits.kinds or budget.spent:
             continue
         if best is not None and rung.kinds & {"sweep", "clauses"}:
             break
-        search = Search(budget.share(rung.share), memory, shortest)
+        search = Search(budget.share(rung.share), limits.memory, limits.shortest)
         found = rung.find(question, search)
         evidence = write_witness(question, found) if isinstance(found, tuple) else found
-        if evidence is None or evidence.kind not in kinds:
+        if evidence is None or evidence.kind not in limits.kinds:
             continue
-        if isinstance(evidence, Witness) or not shortest:
+        if isinstance(evidence, Witness) or not limits.shortest:
             return evidence
         if best is None or evidence.length < best.length:
             best = evidence

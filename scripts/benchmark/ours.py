@@ -5,13 +5,13 @@ from __future__ import annotations
 import json
 
 import networkx
+
 from benchmark.outcome import Outcome, processor_seconds
 from certify.checker import check_line
 from certify.evidence.record import write_record
 from certify.graph.graph import Graph
 from certify.graph.question import Question
-from certify.search.budget import Budget
-from certify.search.ladder import settle
+from certify.search.ladder import Limits, settle
 
 
 def run_certify(question: Question, limit: float) -> Outcome:
@@ -24,7 +24,7 @@ def run_certify(question: Question, limit: float) -> Outcome:
     """
     claim, graph, source = _write_claim(question)
     start = processor_seconds()
-    evidence = settle(question, budget=Budget.of(limit))
+    evidence = settle(question, Limits(seconds=limit))
     record = write_record(1, graph, evidence)
     found = processor_seconds()
     verdict = check_line(claim, 1, record.line, record.files, source)
