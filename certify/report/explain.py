@@ -38,8 +38,14 @@ def render_reason(
     """
     blocks = explain(graph, question, record, read_file)
     if lasting is not None:
-        said = Paragraph(f"The same reason, word for word, holds for {lasting.render()}.")
-        blocks.insert(len(blocks) - 1, said)
+        span = lasting.render()
+        blocks[-1:] = [
+            Paragraph(f"The same reason, with the same vertices, holds for {span}."),
+            Paragraph(
+                f"This speaks of the graphs for {span} alone, under the rule of the claim, "
+                "and says nothing about other instances."
+            ),
+        ]
     return set_plain(blocks)
 
 
