@@ -6,7 +6,7 @@ import json
 
 import networkx
 
-from benchmark.outcome import Outcome, processor_seconds
+from benchmark.outcome import Answer, Outcome, processor_seconds
 from certify.checker import check_line
 from certify.evidence.record import write_record
 from certify.graph.graph import Graph
@@ -31,7 +31,9 @@ def run_certify(question: Question, limit: float) -> Outcome:
     checked = processor_seconds()
     if evidence is not None and not verdict.accepted:
         raise RuntimeError(f"the checker rejects what was found: {verdict.reason}")
-    answer = "open" if evidence is None else "exists" if record.answer == "exists" else "impossible"
+    answer: Answer = "open"
+    if evidence is not None:
+        answer = "exists" if record.answer == "exists" else "impossible"
     kind = "budget" if evidence is None else record.kind
     steps = int(record.evidence.get("steps", 0))
     return Outcome(answer, found - start, checked - found, kind, steps)

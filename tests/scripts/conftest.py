@@ -1,0 +1,8 @@
+"""Lets the tests of the scripts import the benchmark, which is not installed."""
+
+from __future__ import annotations
+
+import sys
+from pathlib import Path
+
+sys.path.insert(0, str(Path(__file__).resolve().parents[2] / "scripts"))
