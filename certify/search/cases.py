@@ -52,9 +52,9 @@ def find_cases(
 
     question: in normal form; fewer than 3 vertices, or absent, has no tree.
     most_leaves: larger trees are not looked for. most_effort: the search is given up
-    when its linear programs have had so many edges together (10,000 take about a
-    second); this gives the same result on every machine. shortest: look further ahead and
-    try more trees; of those with few leaves the one with the least reading
+    when the squares of the numbers of edges, added over its linear programs, are more
+    (a million takes one to two seconds); the same on every machine. shortest: look
+    further ahead and try more trees; of those with few leaves the one with the least reading
     length is returned (the least of those tried, not of all there are).
     None says that no tree was found within the limits, never that a cycle exists.
     The budget makes the search give up and has no other influence.

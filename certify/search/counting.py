@@ -36,6 +36,8 @@ from certify.search.sparse import find_sparse
 
 _POSITIVE = 1e-6
 _NEGLIGIBLE = 1e-9
+_PARITY_EDGES = 200
+"""Looking for parities takes seconds in larger graphs, where they have never decided anything."""
 _POOL_SIZE = 200
 _POOL_PER_VERTEX = 4
 _BOUNDS = {OPEN: (0.0, 1.0), USED: (1.0, 1.0), REMOVED: (0.0, 0.0)}
@@ -214,10 +216,10 @@ class CountingProgram:
         return None
 
     def _violated(self, x: Sequence[float]) -> list[Fact]:
-        """Return facts that x violates: cuts, or parities if there are none."""
+        """Return facts that x violates: cuts; in small graphs parities if there are none."""
         n, edges, maker = self._question.n, self._question.edges, self._maker
         sides = find_cuts(n, edges, x)
-        if sides:
+        if sides or len(edges) > _PARITY_EDGES:
             return [maker.cut(maker.smaller_side(side)) for side in sides]
         return [
             maker.parity(maker.smaller_side(side), odd) for side, odd in find_parities(n, edges, x)

@@ -9,6 +9,7 @@ they fail. Each share is of what is left of the budget.
     witness       witness               10 %   a bounded number of steps
     counting      counting              20 %   one linear program
     few cases     cases                 20 %   trees a reader can follow
+    block         sweep                 20 %   a part behind three edges
     thin sweep    sweep, witness        20 %   long thin graphs, at once
     clauses       clauses, witness      60 %   the strongest on small dense graphs
     wide sweep    sweep, witness        60 %   what needs memory
@@ -24,6 +25,7 @@ from dataclasses import dataclass
 from certify.evidence.base import Evidence
 from certify.evidence.witness import Witness
 from certify.graph.question import Question
+from certify.search.blocks import find_block
 from certify.search.budget import Budget
 from certify.search.cases import find_cases
 from certify.search.clauses import find_clauses
@@ -36,7 +38,7 @@ from certify.search.witness import find_witness, write_witness
 KINDS = ("witness", "obstruction", "counting", "cases", "sweep", "clauses")
 
 READABLE_LEAVES = 12
-READABLE_EFFORT = 10_000
+READABLE_EFFORT = 500_000
 MOST_LEAVES = 5_000
 THIN_MEMORY = 1 << 26
 
@@ -81,6 +83,10 @@ def _many_cases(question: Question, search: Search) -> Found:
     return find_cases(question, budget=search.budget, most_leaves=MOST_LEAVES)
 
 
+def _block(question: Question, search: Search) -> Found:
+    return find_block(question, budget=search.budget, memory=min(search.memory, THIN_MEMORY))
+
+
 def _thin_sweep(question: Question, search: Search) -> Found:
     memory = min(search.memory, THIN_MEMORY)
     return find_sweep(question, budget=search.budget, memory=memory)
@@ -109,6 +115,7 @@ LADDER = (
     Rung(frozenset({"witness"}), _witness, 0.1),
     Rung(frozenset({"counting"}), _counting, 0.2),
     Rung(frozenset({"cases"}), _few_cases, 0.2),
+    Rung(frozenset({"sweep"}), _block, 0.2),
     Rung(frozenset({"sweep", "witness"}), _thin_sweep, 0.2),
     Rung(frozenset({"clauses", "witness"}), _clauses, 0.6),
     Rung(frozenset({"sweep", "witness"}), _wide_sweep, 0.6),

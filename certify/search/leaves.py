@@ -156,7 +156,7 @@ class Judge:
         self.frame = Frame(question)
         self.mirrors = Mirrors(self.frame)
         self.most_effort = most_effort
-        """How many edges all linear programs together may have; raises when it is more."""
+        """The sum over all linear programs of their number of edges, squared, may be no more."""
         self._effort = 0
         self._budget = budget
         self._program = CountingProgram(question)
@@ -185,7 +185,7 @@ class Judge:
 
         Errors: CycleFoundError, EffortSpentError.
         """
-        self._effort += len(self.frame.edges)
+        self._effort += len(self.frame.edges) ** 2
         if self._effort > self.most_effort:
             raise EffortSpentError
         found = self._program.refute(
