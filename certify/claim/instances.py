@@ -18,6 +18,8 @@ from certify.claim.predicates import BOUND
 from certify.errors import ClaimError
 
 Key = dict[str, int] | int
+EndlessKey = dict[str, int | str]
+"""The key of a row of an endless claim; its growing parameter has the text `"4.."`."""
 Row = tuple[int, ...]
 
 MAX_INSTANCES = 100_000
@@ -27,11 +29,15 @@ MAX_ROWS_TRIED = 1_000_000
 
 @dataclass(frozen=True)
 class Range:
-    """Two bounds, both of them included."""
+    """Two bounds, both of them included.
+
+    endless: there is no upper bound; `high` is the lower one again.
+    """
 
     low: Expression | int
     high: Expression | int
     where: str
+    endless: bool = False
 
     def bounds(self, row: Sequence[int]) -> tuple[int, int]:
         """Return the bounds for a row of the parameters they speak of.
@@ -46,14 +52,17 @@ def number(value: Expression | int, row: Sequence[int]) -> int:
     return value if isinstance(value, int) else value.evaluate(row)
 
 
-def name_key(key: Key) -> str:
-    """Return the key as one word: `n=18`, `m=3,n=4` (sorted by name), or `17`."""
+def name_key(key: Key | EndlessKey) -> str:
+    """Return the key as one word: `n=18`, `m=3,n=4` or `m=3,n=4..` (sorted by name), or `17`.
+
+    The one instance of a claim without parameters is called `only`.
+    """
     if isinstance(key, int):
         return str(key)
-    return ",".join(f"{name}={key[name]}" for name in sorted(key))
+    return ",".join(f"{name}={key[name]}" for name in sorted(key)) or "only"
 
 
-def in_instance(error: ClaimError, key: Key, place: str = "") -> ClaimError:
+def in_instance(error: ClaimError, key: Key | EndlessKey, place: str = "") -> ClaimError:
     """Return the error with the instance, and a place in it, in which it came up."""
     parts = [f"instance {name_key(key)}" if key != {} else "", place]
     text = ", ".join(part for part in parts if part)
@@ -70,10 +79,13 @@ def check_integer(value: int, where: str) -> int:
     return value
 
 
-def read_range(value: object, parameters: tuple[str, ...], where: str) -> Range:
+def read_range(
+    value: object, parameters: tuple[str, ...], where: str, *, may_grow: bool = False
+) -> Range:
     """Read `"lo..hi"`, or a plain integer k for k..k.
 
-    Errors: ClaimError, also for a range without an end.
+    may_grow: whether `"lo.."` is allowed.
+    Errors: ClaimError.
     """
     if isinstance(value, int) and not isinstance(value, bool):
         value = check_integer(value, where)
@@ -86,19 +98,20 @@ def read_range(value: object, parameters: tuple[str, ...], where: str) -> Range:
             f"{where}: {shown(value)} is not a range; write its first and last value "
             'with two points between them, such as "2..60"'
         )
-    if not parts[1].strip():
+    endless = not parts[1].strip()
+    if endless and not may_grow:
         raise ClaimError(
-            f"{where}: {shown(value)} has no end; endless ranges are not supported yet, "
-            'write the last value too, such as "2..60"'
+            f"{where}: {shown(value)} has no end; only a parameter of [instances] is endless, "
+            'so write the last value too, such as "1..n"'
         )
     if not parts[0].strip():
         raise ClaimError(f"{where}: {shown(value)} has no beginning; write the first value too")
     scope = Scope(parameters=parameters)
-    low, high = (
+    bounds = [
         read_expression(part, sort=INTEGER, scope=scope, where=f"{where}: {side} value")
-        for part, side in zip(parts, ("first", "last"), strict=True)
-    )
-    return Range(low, high, where)
+        for part, side in zip(parts[: 2 - endless], ("first", "last"), strict=False)
+    ]
+    return Range(bounds[0], bounds[-1], where, endless)
 
 
 def find_rows(
