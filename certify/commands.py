@@ -1,4 +1,4 @@
-"""The command line: prove, check, decide, explain.
+"""The command line: prove, check, decide, explain, appendix.
 
 Exit codes: 0 all is as claimed and accepted; 2 bad input or usage; 3 a claim is
 contradicted, or evidence rejected; 4 something is left open.
@@ -18,12 +18,14 @@ from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn, T
 from certify.checker import check_folder
 from certify.checker.__main__ import check_and_print
 from certify.errors import CertifyError, ContradictionError, InputError, OpenError
+from certify.evidence.endless import exists_for
 from certify.flow import Outcome, decide_file, prove
 from certify.graph.question import BUILDERS
 from certify.interface import explain
+from certify.report.appendix import FORMS, render_appendix, write_text
 from certify.report.lasting import find_lasting
 from certify.report.referee import PROGRAM, ask_referee, describe, find_referee
-from certify.report.table import Row, render_table
+from certify.report.table import Row, render_endless_table, render_table
 from certify.search.ladder import KINDS, Limits
 
 budget_option = click.option(
@@ -91,11 +93,17 @@ def prove_command(
     redo: tuple[str, ...],
     as_json: bool,
 ) -> None:
-    """Find evidence for every instance of CLAIM, have it checked, and store it."""
+    """Find, check and store evidence.
+
+    For every instance of CLAIM, a TOML file.
+    """
     limits = Limits(budget, memory << 20, _read_kinds(kinds), shortest)
     run = prove(claim, out=out, limits=limits, redo=redo)
     outcomes = list(_show(run.outcomes, run.count, as_json=as_json))
-    if not as_json:
+    if not as_json and run.claim.growing is not None:
+        click.echo(render_endless_table([_row_of(outcome) for outcome in outcomes]))
+        click.echo(f"evidence: {run.folder}")
+    elif not as_json:
         rows = [Row(o.record.key, o.record.answer, o.record.kind, o.contradicts) for o in outcomes]
         click.echo(render_table(rows))
         for lasting in find_lasting(o.settled for o in outcomes):
@@ -118,7 +126,10 @@ def prove_command(
 def decide_command(
     graphfile: Path, structure: str, form: str | None, budget: float, as_json: bool
 ) -> None:
-    """Answer a quick question about each graph in GRAPHFILE; no claim needed."""
+    """Answer for each graph in a file.
+
+    A quick question about the graphs in GRAPHFILE; no claim is needed.
+    """
     outcomes = decide_file(graphfile, structure, form=form, limits=Limits(budget))
     raise_for(list(_show(outcomes, None, as_json=as_json)), None)
 
@@ -132,7 +143,7 @@ def decide_command(
 )
 @json_option
 def check_command(folders: tuple[Path, ...], referee: str | None, as_json: bool) -> None:
-    """Check the evidence in each FOLDER, believing nothing but its files."""
+    """Check evidence, from its files alone."""
     codes = [check_and_print(check_folder(folder), as_json=as_json) for folder in folders]
     if referee is not None:
         codes += [_ask_referee(folder, as_json=as_json) for folder in folders]
@@ -157,8 +168,34 @@ def _ask_referee(folder: Path, *, as_json: bool) -> int:
 @click.argument("folder", type=existing_folder)
 @click.argument("instance")
 def explain_command(folder: Path, instance: str) -> None:
-    """Print the reason for one INSTANCE (n=18, m=3,n=4 or 17) in plain English."""
+    """Print the reason for one instance.
+
+    In plain English; INSTANCE is n=18, m=3,n=4, or 17 for a graph of a list.
+    """
     click.echo(explain(folder, instance))
+
+
+@commands.command("appendix")
+@click.argument("folder", type=existing_folder)
+@click.option(
+    "--format", "form", type=click.Choice(list(FORMS)), default="latex", show_default=True
+)
+@click.option(
+    "--out",
+    type=click.Path(dir_okay=False, path_type=Path),
+    metavar="FILE",
+    help="Where the text goes; printed if not given.",
+)
+def appendix_command(folder: Path, form: str, out: Path | None) -> None:
+    """Check FOLDER, and write its claim, table and proofs as the appendix of a paper."""
+    appendix = render_appendix(folder, form)
+    if out is None:
+        click.echo(appendix.text, nl=False)
+    else:
+        write_text(out, appendix.text)
+    if appendix.left_open:
+        noun = "instance" if appendix.left_open == 1 else "instances"
+        raise OpenError(f"left open: {appendix.left_open} {noun}, as the appendix says")
 
 
 def _read_kinds(text: str | None) -> frozenset[str]:
@@ -198,12 +235,22 @@ def _line(outcome: Outcome) -> str:
     text = f"{outcome.name}: {record.answer}"
     if record.answer != "open":
         text += f", {record.kind} of length {record.length}"
+        exists = exists_for(record)
+        text += "" if exists is None else f"; exists for {exists}"
     return text + (f" -- {outcome.verdict.reason}" if outcome.contradicts else "")
+
+
+def _row_of(outcome: Outcome) -> tuple[str, str]:
+    """Return the name of a row of an endless claim, and for which values the object exists."""
+    note = " (not as claimed)" if outcome.contradicts else ""
+    return outcome.name, (exists_for(outcome.record) or "left open") + note
 
 
 def _describe(outcome: Outcome) -> dict[str, object]:
     record, verdict = outcome.record, outcome.verdict
+    exists = exists_for(record)
     return {
+        **({} if exists is None else {"exists_for": exists}),
         "instance": record.key,
         "answer": record.answer,
         "kind": record.kind,

@@ -13,16 +13,20 @@ from pathlib import Path
 
 from certify.checker import Verdict, check_line
 from certify.claim.claim import Claim, count_instances, read_claim
+from certify.claim.endless import claimed_set, endless_key, row_of
 from certify.claim.instances import Key, name_key
 from certify.errors import CertifyError, ContradictionError, InputError
 from certify.evidence.carry import carry_over
+from certify.evidence.endless import write_endless_record
 from certify.evidence.record import Record, read_record, write_record
 from certify.evidence.store import Store, claim_name, name_of
 from certify.graph.build import Instance, build_graph, build_question, instances
 from certify.graph.files import format_of, read_sources
 from certify.graph.graph import Graph
 from certify.graph.question import BUILDERS, Question
+from certify.graph.strip import read_strip
 from certify.report.lasting import Lasting, Settled, find_lasting_around
+from certify.search.endless import find_endless
 from certify.search.ladder import DEFAULTS, Limits, settle
 
 
@@ -86,9 +90,18 @@ def prove(
     """
     path = Path(claim_path)
     claim = read_claim(path)
+    _check_rows(claim)
     folder = Path(out) if out is not None else path.parent
     outcomes = _prove(claim, path, folder, limits, set(redo))
     return Run(claim, folder, count_instances(claim), outcomes)
+
+
+def _check_rows(claim: Claim) -> None:
+    """Refuse an endless claim whose rows are not all strips with periodic answers, in time."""
+    if claim.growing is not None:
+        for row in claim.rows:
+            claimed_set(claim, row)
+            read_strip(claim, row)
 
 
 def _prove(
@@ -105,8 +118,7 @@ def _prove(
                 line = None if again else stored.get(name_of(instance.key))
                 outcome = _take_stored(claim, instance, line, store) if line else None
                 if outcome is None:
-                    question = build_question(claim, instance.key, instance.graph)
-                    outcome = _settle(claim.raw, instance, question, limits)
+                    outcome = _find(claim, instance, limits)
                     outcome = _keep_reason(claim.raw, instance, outcome, last) or outcome
                 last = outcome
                 store.add(outcome.record, stored=outcome.stored)
@@ -135,9 +147,25 @@ def _take_stored(claim: Claim, instance: Instance, line: bytes, store: Store) ->
     return Outcome(record, verdict, instance.graph, question, stored=True)
 
 
+def _find(claim: Claim, instance: Instance, limits: Limits) -> Outcome:
+    """Search for the evidence of an instance of a claim, and have it checked."""
+    question = build_question(claim, instance.key, instance.graph)
+    if claim.growing is None:
+        return _settle(claim.raw, instance, question, limits)
+    row = row_of(claim, instance.key)
+    evidence = find_endless(read_strip(claim, row), limits)
+    record = write_endless_record(endless_key(claim, row), evidence)
+    return _judge(claim.raw, instance, question, record)
+
+
 def _settle(claim: bytes, instance: Instance, question: Question, limits: Limits) -> Outcome:
     """Search, write the record, and have it checked; what the limits do not settle is open."""
     record = write_record(instance.key, instance.graph, settle(question, limits))
+    return _judge(claim, instance, question, record)
+
+
+def _judge(claim: bytes, instance: Instance, question: Question, record: Record) -> Outcome:
+    """Have a fresh record checked."""
     verdict = _check(claim, instance, record)
     if not (verdict.holds or verdict.is_open):
         raise UnsoundError(
@@ -205,6 +233,11 @@ def decide_instance(
     return _settle(claim.encode(), instance, build(instance.graph), limits)
 
 
+def read_stored_claim(folder: Path) -> Claim:
+    """Read the claim whose evidence a folder holds. Errors: InputError."""
+    return read_claim(folder / claim_name(folder))
+
+
 def find_outcome(folder: Path, name: str) -> tuple[Outcome, Lasting | None]:
     """Read the stored evidence of one instance, and the run with the same reason around it.
 
@@ -213,8 +246,8 @@ def find_outcome(folder: Path, name: str) -> tuple[Outcome, Lasting | None]:
     Errors: InputError when there is no such instance or no evidence; a
     ContradictionError when the checker rejects what is stored.
     """
-    claim_path = folder / claim_name(folder)
-    claim = read_claim(claim_path)
+    claim = read_stored_claim(folder)
+    claim_path = folder / claim.name
     store = Store(folder, claim, claim_path)
     stored = store.read_stored()
     wanted = name.replace(" ", "")
@@ -228,6 +261,9 @@ def find_outcome(folder: Path, name: str) -> tuple[Outcome, Lasting | None]:
                 f"{folder}: the evidence stored for {instance.name} is missing, open or rejected\n"
                 f"  next: certify check {folder}"
             )
+
+        if claim.growing is not None:
+            return outcome, None
 
         def look_up(key: Key) -> Settled | None:
             other = stored.get(name_of(key))

@@ -10,11 +10,15 @@ from typing import Any
 import networkx
 
 from certify.checker import FolderCheck, check_folder
+from certify.claim.endless import endless_key, find_row
+from certify.claim.instances import name_key
 from certify.errors import InputError
-from certify.flow import Outcome, decide_instance, find_outcome, prove
+from certify.flow import Outcome, decide_instance, find_outcome, prove, read_stored_claim
 from certify.graph.build import Instance
 from certify.graph.graph import Graph, edge_between
 from certify.graph.question import BUILDERS
+from certify.graph.strip import read_strip
+from certify.report.endless import render_endless
 from certify.report.explain import render_reason
 from certify.report.lasting import Lasting
 from certify.search.ladder import Limits
@@ -89,6 +93,14 @@ def check(folder: Path | str) -> FolderCheck:
 
 
 def explain(folder: Path | str, instance: str) -> str:
-    """Return the reason for one instance (`n=18`, `m=3,n=4`, `17`) in plain English."""
+    """Return the reason for one instance (`n=18`, `m=3,n=4`, `17`) in plain English.
+
+    Of an endless claim: for a row (`n=2..`), or for one of its graphs (`n=1000003`).
+    """
+    claim = read_stored_claim(Path(folder))
+    if claim.growing is not None:
+        row, n = find_row(claim, instance)
+        outcome, _ = find_outcome(Path(folder), name_key(endless_key(claim, row)))
+        return render_endless(read_strip(claim, row), outcome.record.evidence, n)
     outcome, lasting = find_outcome(Path(folder), instance)
     return render_outcome(outcome, lasting)

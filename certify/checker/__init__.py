@@ -51,8 +51,8 @@ def check_line(
 
     try:
         known = _read_claim(claim)
-        if isinstance(key, dict):
-            built = known.build([key[name] for name in known.parameters])
+        if not isinstance(key, int):
+            built = known.draw(known.row(key))
         else:
             (built,) = read_list(graph, known.list_format)
         return check_record(known, key, built, line, read_file)

@@ -7,8 +7,10 @@ Exit code: 0 every claim is accepted; 2 wrong usage; 3 something is rejected;
 from __future__ import annotations
 
 import json
+import os
 import sys
 from pathlib import Path
+from typing import TextIO
 
 from .folder import FolderCheck, complain, describe
 
@@ -20,8 +22,8 @@ def main(arguments: list[str]) -> int:
     wrong = [item for item in folders if item.startswith("-") or not Path(item).is_dir()]
     if not folders or wrong:
         for item in wrong:
-            print(f"{item}: not a folder", file=sys.stderr)
-        print("usage: python -m certify.checker [--json] FOLDER ...", file=sys.stderr)
+            say(f"{item}: not a folder", sys.stderr)
+        say("usage: python -m certify.checker [--json] FOLDER ...", sys.stderr)
         return 2
     codes = [check_and_print(FolderCheck(Path(item)), as_json=as_json) for item in folders]
     return 3 if 3 in codes else max(codes)
@@ -33,20 +35,45 @@ def check_and_print(check: FolderCheck, *, as_json: bool) -> int:
     for verdict in check.verdicts():
         count += 1
         if as_json:
-            print(json.dumps(describe(check, verdict), sort_keys=True))
+            say(json.dumps(describe(check, verdict), sort_keys=True), sys.stdout)
         elif not verdict.accepted:
-            print(complain(check, verdict))
+            say(complain(check, verdict), sys.stdout)
     for complaint in check.complaints:
-        print(f"{check.folder}: rejected: {complaint}", file=sys.stderr if as_json else sys.stdout)
+        say(f"{check.folder}: rejected: {complaint}", sys.stderr if as_json else sys.stdout)
     if not as_json:
         fine = check.answers.total()
+        words = [("exists", "exist"), ("impossible", "impossible")]
+        if check.answers["settled"]:
+            words = [("settled", "settled without end")]
         state = "accepted" if check.accepted else "open" if check.only_open else "rejected"
-        print(
+        say(
             f"{check.folder}: {state}: {fine} of {count} instances accepted "
-            f"({check.answers['exists']} exist, {check.answers['impossible']} impossible)"
+            f"({', '.join(f'{check.answers[name]} {text}' for name, text in words)})",
+            sys.stdout,
         )
     return 0 if check.accepted else 4 if check.only_open else 3
 
 
+def say(text: str, file: TextIO) -> None:
+    """Print a text, escaping what the terminal has no letter for."""
+    encoding = file.encoding or "utf-8"
+    print(text.encode(encoding, "backslashreplace").decode(encoding), file=file)
+
+
+def run() -> None:
+    """Check the folders named on the command line, and leave with the exit code.
+
+    This is what a zipapp has to call: it would drop what `main` returns.
+    """
+    try:
+        code = main(sys.argv[1:])
+        sys.stdout.flush()
+    except BrokenPipeError:
+        # Whoever read the output has seen enough of it; nothing was accepted.
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        code = 3
+    sys.exit(code)
+
+
 if __name__ == "__main__":
-    sys.exit(main(sys.argv[1:]))
+    run()

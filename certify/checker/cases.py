@@ -12,6 +12,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from itertools import combinations
+from math import comb
 from typing import Any
 
 from .counting import check_counting
@@ -34,7 +35,7 @@ NONE: Assumptions = (frozenset(), frozenset())
 
 @dataclass
 class _Branch:
-    """A branching node whose children are being read."""
+    """A branching node whose children are being read; the last of `children` comes next."""
 
     number: int
     state: State
@@ -61,15 +62,16 @@ def check_cases(question: Question, body: dict[str, Any]) -> None:
             if not path:
                 raise Rejected(f"node {number} comes after the end of the tree")
             branch = path[-1]
-            used, removed = branch.children.pop(0)
+            used, removed = branch.children.pop()
             state = branch.state.assume(sorted(used), sorted(removed))
             assumed = (branch.assumed[0] | used, branch.assumed[1] | removed)
         try:
-            children = _check_node(question, state, node, closed, symmetries)
+            most = len(nodes) - number - 1
+            children = _check_node(question, state, node, closed, symmetries, most)
         except Rejected as error:
             raise Rejected(f"node {number}: {error}") from None
         if children:
-            path.append(_Branch(number, state, children, assumed))
+            path.append(_Branch(number, state, children[::-1], assumed))
             continue
         closed[number] = assumed
         while path and not path[-1].children:
@@ -85,8 +87,12 @@ def _check_node(
     node: object,
     closed: dict[int, Assumptions],
     symmetries: list[list[int]],
+    most: int,
 ) -> list[Assumptions]:
-    """Return the assumptions of a node's children; none, when the node is a closed leaf."""
+    """Return the assumptions of a node's children; none, when the node is a closed leaf.
+
+    most: how many nodes follow, and so how many children there may be.
+    """
     name, *parts = need_list(node, "node") or [None]
     if name == "forced" and not parts:
         if not state.contradiction:
@@ -109,14 +115,27 @@ def _check_node(
         return [(one, frozenset()), (frozenset(), one)]
     if name == "vertex" and len(parts) == 1:
         v = need_vertex(parts[0], state.n, "vertex")
-        if len(state.used[v]) >= 2:
-            raise Rejected(f"vertex {v} has its two edges already")
-        return [
-            (frozenset([edge(v, a), edge(v, b)]), frozenset())
-            for a, b in combinations(sorted(state.left[v]), 2)
-            if state.used[v] <= {a, b}
-        ]
+        return _pairs_at(state, v, most)
     raise Rejected("not a node")
+
+
+def _pairs_at(state: State, v: int, most: int) -> list[Assumptions]:
+    """Return one child for each pair of edges that a Hamiltonian cycle may use at v.
+
+    The state is free of contradiction, so two edges or more are left at v, and there
+    is a child.
+    """
+    left, used = state.left[v], state.used[v]
+    if len(used) >= 2:
+        raise Rejected(f"vertex {v} has its two edges already")
+    if (len(left) - 1 if used else comb(len(left), 2)) > most:
+        raise Rejected("the tree is cut short")
+    first = used or left
+    return [
+        (frozenset([edge(v, a), edge(v, b)]), frozenset())
+        for a, b in combinations(sorted(left), 2)
+        if a in first or b in first
+    ]
 
 
 def _check_like(

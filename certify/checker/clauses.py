@@ -9,71 +9,70 @@ be complete: if any H existed, it would satisfy every fact.
 from __future__ import annotations
 
 from collections.abc import Iterator
-from itertools import combinations
+from itertools import combinations, zip_longest
 from typing import Any
 
 from .graphs import Edge, Question, edge, is_automorphism, need_question_of_cycle
-from .lrat import Clause, check_proof, read_numbers
+from .lrat import Clause, check_proof, read_lines, read_numbers, write_clause
 from .strict import Rejected, need_integer, need_keys
 
 MOST_DIRECT_DEGREE = 6
 FACTS = ("degree", "cut", "required", "mirror")
 
 
-def check_clauses(question: Question, body: dict[str, Any], cnf: str, lrat: str, drat: str) -> None:
-    """Accept facts and a proof, given as the texts of the three files."""
+def check_clauses(
+    question: Question, body: dict[str, Any], cnf: bytes, lrat: bytes, drat: bytes
+) -> None:
+    """Accept facts and a proof, given as what the three files hold."""
     need_question_of_cycle(question)
     need_keys(body, {"clauses", "steps", "cnf", "lrat", "drat"}, "clauses")
-    facts = _read_facts(cnf)
-    clauses, text = write_formula(question, facts)
-    if text != cnf:
-        raise Rejected("the formula is not the one that its facts give")
-    steps = _lines(lrat, "LRAT")
+    clauses = check_formula(question, cnf)
     if need_integer(body["clauses"], "clauses") != len(clauses):
         raise Rejected(f"there are {len(clauses)} clauses and not {body['clauses']}")
-    if need_integer(body["steps"], "steps") != len(steps):
-        raise Rejected(f"there are {len(steps)} steps and not {body['steps']}")
-    check_proof(clauses, steps)
-    without_hints = [step.split(" ", 1)[1].split(" ") for step in steps]
-    if drat != "".join([" ".join(words[: words.index("0") + 1]) + "\n" for words in without_hints]):
-        raise Rejected("the DRAT file does not have the steps of the LRAT file")
+    added = check_proof(clauses, read_lines(lrat, "LRAT"))
+    if need_integer(body["steps"], "steps") != len(added):
+        raise Rejected(f"there are {len(added)} steps and not {body['steps']}")
+    for line, clause in zip_longest(read_lines(drat, "DRAT"), added):
+        if clause is None or line != write_clause(clause):
+            raise Rejected("the DRAT file does not have the steps of the LRAT file")
 
 
-def _lines(text: str, what: str) -> list[str]:
-    if not text.endswith("\n"):
-        raise Rejected(f"the {what} file is cut short")
-    return text[:-1].split("\n")
+def check_formula(question: Question, cnf: bytes) -> list[Clause]:
+    """Return the clauses of a CNF file, if they are those of the true facts above them.
 
-
-def _read_facts(cnf: str) -> list[tuple[str, list[int]]]:
-    facts = []
-    for line in _lines(cnf, "CNF"):
-        if not line.startswith("c fact "):
-            break
-        name, _, rest = line.removeprefix("c fact ").partition(" ")
-        if name not in FACTS:
-            raise Rejected(f"unknown fact {name!r}")
-        facts.append((name, read_numbers(rest)))
-    return facts
-
-
-def write_formula(
-    question: Question, facts: list[tuple[str, list[int]]]
-) -> tuple[list[Clause], str]:
-    """Return the clauses of the facts, and the text of the CNF file."""
+    The facts are read and their clauses compared as they come, so that a file
+    of a few facts with large clauses takes no more room than the file.
+    """
+    start = 0 if cnf.startswith(b"p") else cnf.find(b"\np") + 1
+    lines = read_lines(cnf[start:], "CNF")
+    size = next(lines, "")
     builder = _Builder(question)
-    for name, numbers in facts:
-        if any(not 0 <= v < question.n for v in numbers[name == "mirror" :]):
-            raise Rejected(f"fact {name} names a vertex that is not in the graph")
-        builder.clauses.extend(builder.clauses_of(name, numbers))
-    by_number = ("degree", "required")
-    keys = [(FACTS.index(name), numbers if name in by_number else []) for name, numbers in facts]
-    if keys != sorted(keys):
-        raise Rejected("the facts are not in their order")
-    head = [f"c fact {name} {' '.join(map(str, numbers))}\n" for name, numbers in facts]
-    size = f"p cnf {builder.variables} {len(builder.clauses)}\n"
-    body = [" ".join(map(str, (*clause, 0))) + "\n" for clause in builder.clauses]
-    return builder.clauses, "".join([*head, size, *body])
+    clauses: list[Clause] = []
+    last: tuple[int, list[int]] = (-1, [])
+    for fact in read_lines(cnf[:start], "CNF"):
+        name, numbers = _read_fact(question, fact)
+        by_number = name in ("degree", "required")
+        this = (FACTS.index(name), numbers if by_number else [])
+        if this < last or (this == last and by_number):
+            raise Rejected("the facts are not in their order, or one is doubled")
+        last = this
+        for clause in builder.clauses_of(name, numbers):
+            if next(lines, None) != write_clause(clause):
+                raise Rejected(f"the clauses of the fact {fact!r} are other ones")
+            clauses.append(clause)
+    if size != f"p cnf {builder.variables} {len(clauses)}" or next(lines, None) is not None:
+        raise Rejected("the formula has other variables or clauses than its facts")
+    return clauses
+
+
+def _read_fact(question: Question, line: str) -> tuple[str, list[int]]:
+    words = line.split(" ", 3)
+    if len(words) < 4 or words[:2] != ["c", "fact"] or words[2] not in FACTS:
+        raise Rejected(f"not a fact: {line!r}")
+    name, numbers = words[2], read_numbers(words[3])
+    if any(not 0 <= v < question.n for v in numbers[1 if name == "mirror" else 0 :]):
+        raise Rejected(f"fact {name} names a vertex that is not in the graph")
+    return name, numbers
 
 
 class _Builder:
@@ -84,7 +83,6 @@ class _Builder:
         self.edges = sorted(question.edges)
         self.variable = {e: i for i, e in enumerate(self.edges, 1)}
         self.variables = len(self.edges)
-        self.clauses: list[Clause] = []
 
     def new(self) -> int:
         self.variables += 1
@@ -150,6 +148,7 @@ class _Builder:
         least edge vector. It is no larger than its own images, for every mirror at
         once, as all use the one order of the edges.
         """
+        # n numbers below n, all different, are a permutation.
         if len(set(image)) != len(image) or not is_automorphism(self.question, image):
             raise Rejected("a mirror does not map the question onto itself")
         back = {self.variable[edge(image[u], image[v])]: i for (u, v), i in self.variable.items()}

@@ -2,21 +2,17 @@
 
 from __future__ import annotations
 
-import hashlib
-import re
 from collections import Counter
 from collections.abc import Iterator
-from io import BufferedReader
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
 from .claims import Claim, Key
+from .files import EVIDENCE, MANIFEST, Files
 from .graphs import Graph
 from .records import Verdict, check_record, name_key
-from .strict import Rejected, need_integer, need_keys, need_object, need_text, read_json
-
-MANIFEST, EVIDENCE = "manifest.json", "evidence.jsonl"
-MOST_MANIFEST, MOST_LINE = 1 << 28, 1 << 28
+from .strict import Rejected, printable
 
 
 class FolderCheck:
@@ -30,12 +26,15 @@ class FolderCheck:
     def __init__(self, folder: Path) -> None:
         self.folder = folder
         self.complaints: list[str] = []
-        self.claim_name = ""
         self.answers: Counter[str] = Counter()
         self.rejected = self.left_open = 0
         self._whole = False
-        self._digests: dict[str, str] = {}
-        self._named: set[str] = set()
+        self._files = Files(folder)
+
+    @property
+    def claim_name(self) -> str:
+        """The name of the claim file, empty until the manifest is read."""
+        return self._files.claim_name
 
     @property
     def accepted(self) -> bool:
@@ -51,63 +50,23 @@ class FolderCheck:
     def verdicts(self) -> Iterator[Verdict]:
         """Yield the verdict on every instance, in order."""
         try:
-            self._read_manifest()
-            claim = Claim(self._read_file(self.claim_name))
+            self._files.read_manifest()
+            claim = Claim(self._files.read(self.claim_name))
+            if claim.list_name in (self.claim_name, EVIDENCE, MANIFEST):
+                raise Rejected(f"the list of graphs cannot be {claim.list_name}")
             yield from self._check_lines(claim)
             self._check_counts(claim)
-            unused = sorted(set(self._digests) - self._named)
-            if unused:
-                raise Rejected(f"the manifest lists {unused[0]}, which no record names")
+            self._files.need_all_named()
             self._whole = True
         except Rejected as error:
             self.complaints.append(str(error))
-
-    def _read_manifest(self) -> None:
-        try:
-            with self._open(MANIFEST) as file:
-                data = file.read(MOST_MANIFEST)
-            text = data.decode("utf-8")
-        except UnicodeDecodeError:
-            raise Rejected(f"{MANIFEST} is not UTF-8 text") from None
-        manifest = need_keys(read_json(text), {"claim", "format", "sha256"}, MANIFEST)
-        if need_integer(manifest["format"], "format") != 1:
-            raise Rejected(f"{MANIFEST} is of format {manifest['format']}, and this reads 1")
-        self._digests = need_object(manifest["sha256"], "sha256")
-        self.claim_name = need_text(manifest["claim"], "claim")
-        for name, digest in self._digests.items():
-            with self._open(name) as file:
-                found = hashlib.file_digest(file, "sha256").hexdigest()
-            if found != digest:
-                raise Rejected(f"{name} has changed since the manifest was written")
-
-    def _open(self, name: str) -> BufferedReader:
-        """Open a regular file of the folder by its relative name."""
-        parts = name.split("/")
-        if any(part in ("", ".", "..") for part in parts) or re.search(r"[\\:\x00-\x1f]", name):
-            raise Rejected(f"{name!r} is not the name of a file in the folder")
-        path = self.folder.joinpath(*parts)
-        try:
-            if path.is_symlink() or not path.is_file():
-                raise Rejected(f"{name} is missing or is not a regular file")
-            return path.open("rb")
-        except (OSError, ValueError) as error:
-            raise Rejected(f"{name} cannot be read: {error}") from None
-
-    def _read_file(self, name: str) -> bytes:
-        """Return a file that the manifest lists, as it was when its digest was taken."""
-        if name not in self._digests:
-            raise Rejected(f"the manifest does not list {name}")
-        self._named.add(name)
-        with self._open(name) as file:
-            data = file.read()
-        if hashlib.sha256(data).hexdigest() != self._digests[name]:
-            raise Rejected(f"{name} has changed while it was read")
-        return data
+        except (OSError, MemoryError) as error:
+            self.complaints.append(printable(f"the folder cannot be read: {error!r}"))
 
     def _check_lines(self, claim: Claim) -> Iterator[Verdict]:
-        lines = self._lines()
+        lines = self._files.read_lines()
         number = 0
-        for key, graph in claim.instances(self._read_file):
+        for key, graph in claim.instances(self._files.read):
             line = next(lines, None)
             number += 1
             if line is None:
@@ -127,16 +86,8 @@ class FolderCheck:
     def _check_line(
         self, claim: Claim, key: Key, graph: Graph, line: bytes, number: int
     ) -> Verdict:
-        verdict = check_record(claim, key, graph, line, self._read_file)
-        return Verdict(**{**vars(verdict), "line": number})
-
-    def _lines(self) -> Iterator[bytes]:
-        if EVIDENCE not in self._digests:
-            raise Rejected(f"the manifest does not list {EVIDENCE}")
-        self._named.add(EVIDENCE)
-        with self._open(EVIDENCE) as file:
-            while line := file.readline(MOST_LINE):
-                yield line
+        verdict = check_record(claim, key, graph, line, self._files.read)
+        return replace(verdict, line=number)
 
     def _check_counts(self, claim: Claim) -> None:
         if claim.counts and not (self.rejected or self.left_open):

@@ -24,8 +24,10 @@ class State:
     def __init__(self, question: Question) -> None:
         self.n = question.n
         self.edges = question.edges
-        self.left = [set(at_v) for at_v in question.near]
-        self.used: list[set[int]] = [set() for _ in range(question.n)]
+        # The neighbours along edges not removed, and along used ones. Frozen sets, so that
+        # a copy of the lists is a copy of the state.
+        self.left = [frozenset(at_v) for at_v in question.near]
+        self.used: list[frozenset[int]] = [frozenset()] * question.n
         # For the ends of a used path: its other end, and its number of vertices.
         self.other_end = list(range(question.n))
         self.size = [1] * question.n
@@ -39,8 +41,7 @@ class State:
         """Return a state of its own with the same edges."""
         twin = object.__new__(State)
         twin.n, twin.edges, twin.contradiction = self.n, self.edges, self.contradiction
-        twin.left = [set(at_v) for at_v in self.left]
-        twin.used = [set(at_v) for at_v in self.used]
+        twin.left, twin.used = list(self.left), list(self.used)
         twin.other_end, twin.size = list(self.other_end), list(self.size)
         twin._waiting = []
         return twin
@@ -79,8 +80,8 @@ class State:
         if closes and self.size[u] < self.n:
             self.contradiction = True
             return
-        self.used[u].add(v)
-        self.used[v].add(u)
+        self.used[u] |= {v}
+        self.used[v] |= {u}
         if not closes:
             self.other_end[first], self.other_end[last] = last, first
             self.size[first] = self.size[last] = size
@@ -94,8 +95,8 @@ class State:
         if v in self.used[u]:
             self.contradiction = True
             return
-        self.left[u].discard(v)
-        self.left[v].discard(u)
+        self.left[u] -= {v}
+        self.left[v] -= {u}
         self._waiting += [u, v]
 
     def _settle(self) -> None:

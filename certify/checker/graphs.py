@@ -17,10 +17,6 @@ class Graph:
     names: list[object]
     edges: list[Edge]
 
-    def numbers(self) -> dict[object, int]:
-        """Return the number of every name."""
-        return {name: number for number, name in enumerate(self.names)}
-
 
 @dataclass
 class Question:
@@ -35,7 +31,6 @@ class Question:
     required: set[Edge]
     path: bool = False
     absent: bool = False
-    ends: tuple[int, ...] = ()
     near: list[set[int]] = field(default_factory=list)
 
     def __post_init__(self) -> None:
@@ -94,15 +89,14 @@ def make_question(
     # the apex, without it, is such a path, and the other way round.
     targets = set(places) if len(places) == 2 else set(range(n))
     at_ends = {(v, n) for v in places}
-    return Question(
-        n + 1, edges | {(v, n) for v in targets}, wanted | at_ends, True, absent, places
-    )
+    return Question(n + 1, edges | {(v, n) for v in targets}, wanted | at_ends, True, absent)
 
 
 def is_automorphism(question: Question, image: list[int]) -> bool:
     """Return whether a permutation maps edges to edges and required to required ones.
 
-    A permutation is injective on pairs, so mapping each edge to an edge is enough.
+    image: a permutation of the vertices. It is injective on pairs, and there are
+    finitely many, so mapping each edge to an edge is enough.
     """
     return all(edge(image[u], image[v]) in question.edges for u, v in question.edges) and all(
         edge(image[u], image[v]) in question.required for u, v in question.required

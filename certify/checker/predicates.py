@@ -9,6 +9,7 @@ from math import gcd, isqrt
 # Miller-Rabin with these bases decides primality below 3.3 * 10^24:
 # Sorenson and Webster, Math. Comp. 86 (2017) 985-1003.
 _BASES = (2, 3, 5, 7, 11, 13, 17, 19, 23, 29, 31, 37)
+_ODD_PRIMES = (3, 5, 7, 11, 13, 17, 19, 23, 29, 31, 37, 41, 43, 47, 53)
 
 
 def is_square(i: int) -> bool:
@@ -16,22 +17,17 @@ def is_square(i: int) -> bool:
     return i >= 0 and isqrt(i) ** 2 == i
 
 
-def _root(i: int, e: int) -> int:
-    """Return the largest k with k**e <= i, for i >= 1, by bisection."""
-    low, high = 1, 1 << (i.bit_length() // e + 1)
-    while low < high:
-        middle = (low + high + 1) // 2
-        if middle**e <= i:
-            low = middle
-        else:
-            high = middle - 1
-    return low
+def _is_power_of(i: int, e: int) -> bool:
+    """Whether i = k^e for some k >= 1, where 1 <= i <= 2^53."""
+    # The floating root is off by less than 1, and what counts is the exact power.
+    near = round(i ** (1 / e))
+    return any(k**e == i for k in (near - 1, near, near + 1))
 
 
 @lru_cache(maxsize=1 << 16)
 def is_cube(i: int) -> bool:
     """Whether i = k^3, for any integer k."""
-    return i == 0 or _root(abs(i), 3) ** 3 == abs(i)
+    return i == 0 or _is_power_of(abs(i), 3)
 
 
 def is_triangular(i: int) -> bool:
@@ -79,9 +75,8 @@ def is_prime(i: int) -> bool:
 @lru_cache(maxsize=1 << 16)
 def is_power(i: int) -> bool:
     """Whether i = k^e with k >= 1 and e >= 2."""
-    if i < 1:
-        return False
-    return i == 1 or any(_root(i, e) ** e == i for e in range(2, i.bit_length() + 1))
+    # k^e = (k^(e/p))^p for a prime p that divides e, and 2^54 is beyond all values.
+    return i > 0 and (is_square(i) or any(_is_power_of(i, e) for e in _ODD_PRIMES))
 
 
 PREDICATES: dict[str, Callable[[int], bool]] = {

@@ -2,21 +2,28 @@
 
 from __future__ import annotations
 
-import gzip
 import json
 import zlib
 from collections.abc import Callable
 from dataclasses import dataclass
-from io import BytesIO
 from typing import Any
 
 from .cases import check_cases
 from .claims import Claim, Key
 from .clauses import check_clauses
 from .counting import check_counting
+from .endless import check_endless, find_counterexample
 from .graphs import Graph, Question
 from .obstruction import check_obstruction
-from .strict import Rejected, need_integer, need_keys, need_list, need_object, read_canonical
+from .strict import (
+    Rejected,
+    need_integer,
+    need_keys,
+    need_list,
+    need_object,
+    need_text,
+    read_canonical,
+)
 from .sweep import check_sweep
 from .witness import check_witness
 
@@ -61,7 +68,8 @@ def check_record(claim: Claim, key: Key, graph: Graph, line: bytes, read_file: R
         # Compared as text: in Python true == 1.
         if json.dumps(record["instance"]) != json.dumps(key, sort_keys=True):
             raise Rejected(f"the record is of another instance, {record['instance']}")
-        answer, kind = str(record["answer"]), str(record["kind"])
+        answer = need_text(record["answer"], "answer")
+        kind = need_text(record["kind"], "kind")
         counts = (
             need_integer(record["vertices"], "vertices"),
             need_integer(record["edges"], "edges"),
@@ -76,17 +84,51 @@ def check_record(claim: Claim, key: Key, graph: Graph, line: bytes, read_file: R
             if body or need_integer(record["length"], "length") != 0:
                 raise Rejected("an open instance has no evidence")
             return Verdict(key, answer, kind, False, False, LEFT_OPEN, is_open=True)
-        _check_kind(claim.question(key, graph), answer, kind, body, key, read_file)
+        reason = f"{kind} checked"
+        complaint = None
+        if claim.growing is not None:
+            reason, complaint = _check_all(claim, answer, kind, body, key)
+        else:
+            _check_kind(claim.question(key, graph), answer, kind, body, key, read_file)
         if need_integer(record["length"], "length") != measure(kind, body):
             raise Rejected(f"the reading length is {measure(kind, body)}, not {record['length']}")
     except Rejected as error:
         return Verdict(key, answer, kind, False, False, str(error))
-    claimed = claim.claimed(key)
+    except MemoryError:
+        return Verdict(key, answer, kind, False, False, "too large for the memory of this machine")
+    claimed = claim.claimed(key) if claim.growing is None else None
     if claimed is not None and claimed != (answer == "exists"):
-        said = "exists" if claimed else "impossible"
-        reason = f"the claim says {said}, and the evidence shows {answer}"
-        return Verdict(key, answer, kind, True, False, reason)
-    return Verdict(key, answer, kind, True, True, f"{kind} checked")
+        complaint = _contradict(claimed, "")
+    return Verdict(key, answer, kind, True, complaint is None, complaint or reason)
+
+
+def _contradict(claimed: bool, where: str) -> str:
+    """Return what to say when the answer is the opposite of what is claimed."""
+    said, shown = ("exists", "impossible") if claimed else ("impossible", "exists")
+    return f"the claim says {said}{where}, and the evidence shows {shown}"
+
+
+def _check_all(
+    claim: Claim, answer: str, kind: str, body: dict[str, Any], key: Key
+) -> tuple[str, str | None]:
+    """Accept evidence for all n, and return what was checked, and where the claim is wrong."""
+    if (answer, kind) != ("settled", "endless"):
+        raise Rejected(f"{kind!r} is no evidence for {answer!r} in an endless claim")
+
+    def refuse(name: str) -> bytes:
+        raise Rejected(f"evidence for one n of an endless claim has no files, such as {name}")
+
+    family = claim.family(key)
+    settled = check_endless(
+        family,
+        body,
+        lambda question, answer, kind, part: _check_kind(question, answer, kind, part, key, refuse),
+    )
+    n = find_counterexample(family, settled)
+    complaint = (
+        None if n is None else _contradict(not settled.exists(n), f" for {family.growing} = {n}")
+    )
+    return f"endless checked, {settled.visited} states", complaint
 
 
 def _check_kind(
@@ -119,16 +161,18 @@ _READABLE = {
 }
 
 
-def _unpack(data: bytes, name: str) -> str:
-    """Return the text of a gzip file, refusing one that unpacks without end."""
+def _unpack(data: bytes, name: str) -> bytes:
+    """Return what a gzip file of one member holds, refusing one that unpacks without end."""
+    unpacker = zlib.decompressobj(wbits=31)
     try:
-        with gzip.GzipFile(fileobj=BytesIO(data)) as packed:
-            text = packed.read(MOST_TEXT + 1)
-        if len(text) > MOST_TEXT:
-            raise Rejected(f"{name} holds more than 2^28 characters")
-        return text.decode("ascii")
-    except (OSError, EOFError, zlib.error, UnicodeDecodeError):
-        raise Rejected(f"{name} is not gzip of ASCII text") from None
+        text = unpacker.decompress(data, MOST_TEXT + 1)
+    except zlib.error:
+        raise Rejected(f"{name} is not a gzip file") from None
+    if len(text) > MOST_TEXT:
+        raise Rejected(f"{name} holds more than 2^28 characters")
+    if not unpacker.eof or unpacker.unused_data:
+        raise Rejected(f"{name} is cut short, or goes on after its end")
+    return text
 
 
 def measure(kind: str, body: dict[str, Any]) -> int:
@@ -137,6 +181,10 @@ def measure(kind: str, body: dict[str, Any]) -> int:
         return sum(body["states"])
     if kind == "clauses":
         return int(body["clauses"]) + int(body["steps"])
+    if kind == "endless":
+        return sum(sum(found["states"]) for found in body["classes"]) + sum(
+            measure(small["kind"], small["evidence"]) for small in body["small"]
+        )
     nodes = len(need_list(body["nodes"], "nodes")) if kind == "cases" else 0
     return _count_integers(body) + nodes
 

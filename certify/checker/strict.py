@@ -10,23 +10,55 @@ from __future__ import annotations
 import json
 from typing import Any, NoReturn
 
+MOST_DIGITS = 100
+MOST_SHOWN = 400
+
 
 class Rejected(Exception):
-    """The evidence is not accepted; the text says why."""
+    """The evidence is not accepted; the text, on one printable line, says why."""
+
+    def __init__(self, reason: str) -> None:
+        super().__init__(printable(reason))
 
 
 class BadClaim(Rejected):
     """The claim, or the list of graphs it names, cannot be read as one."""
 
 
+def printable(text: str) -> str:
+    """Return a text as one line can show it: other characters escaped, and cut short."""
+    if len(text) > MOST_SHOWN:
+        text = text[:MOST_SHOWN] + "..."
+    return "".join([c if c.isprintable() else ascii(c)[1:-1] for c in text])
+
+
 def _refuse_number(text: str) -> NoReturn:
     raise Rejected(f"{text[:40]} is not an exact integer")
 
 
+def _read_integer(text: str) -> int:
+    if len(text) - text.startswith("-") > MOST_DIGITS:
+        raise Rejected(f"an integer has more than {MOST_DIGITS} digits")
+    return int(text)
+
+
+def _read_object(pairs: list[tuple[str, Any]]) -> dict[str, Any]:
+    found = dict(pairs)
+    if len(found) != len(pairs):
+        raise Rejected("a key is doubled")
+    return found
+
+
 def read_json(text: str) -> Any:
-    """Read JSON in which every number is an exact integer."""
+    """Read JSON in which every number is an exact integer and no key is doubled."""
     try:
-        return json.loads(text, parse_float=_refuse_number, parse_constant=_refuse_number)
+        return json.loads(
+            text,
+            parse_int=_read_integer,
+            parse_float=_refuse_number,
+            parse_constant=_refuse_number,
+            object_pairs_hook=_read_object,
+        )
     except RecursionError:
         raise Rejected("nested too deeply") from None
     except ValueError as error:
@@ -46,7 +78,11 @@ def read_canonical(line: bytes) -> dict[str, Any]:
     except UnicodeDecodeError:
         raise Rejected("the line is not ASCII") from None
     record = read_json(text)
-    if json.dumps(record, sort_keys=True, separators=(",", ":")) != text:
+    try:
+        canonical = json.dumps(record, sort_keys=True, separators=(",", ":"))
+    except RecursionError:
+        raise Rejected("nested too deeply") from None
+    if canonical != text:
         raise Rejected("the line is not in canonical form")
     return need_object(record, "record")
 

@@ -43,7 +43,8 @@ class Claim:
     name, raw: the file's name and its bytes. where: the file as messages name it.
     title, statement: for readers, empty when they are left out.
     rows: the values of the parameters, one row an instance; of no meaning for a
-    list of graphs.
+    list of graphs. growing: the parameter of an endless claim that has no last value,
+    of which the rows hold the first one; None for other claims.
     """
 
     name: str
@@ -59,6 +60,7 @@ class Claim:
     parameters: tuple[str, ...]
     rows: tuple[Row, ...]
     answers: Answers
+    growing: str | None = None
 
     @property
     def list_name(self) -> str | None:
@@ -75,7 +77,11 @@ class Claim:
         return dict(self.answers.counts)
 
     def instance_keys(self) -> Iterator[dict[str, int]]:
-        """Yield the key of each instance of a rule, in order; nothing for a list."""
+        """Yield the key of each instance of a rule, in order; nothing for a list.
+
+        Of an endless claim, whose instances module `endless` knows, those of the first
+        value of the growing parameter.
+        """
         if isinstance(self.graphs, Rule):
             for row in self.rows:
                 yield dict(zip(self.parameters, row, strict=True))
@@ -133,6 +139,7 @@ class _Reader:
         self.answers = keys.table(document, "answers")
         self.parameters = tuple(name for name in self.instances if name != "where")
         self.coordinates: tuple[str, ...] = ()
+        self.growing: str | None = None
 
     def fault(self, key: str, problem: str) -> ClaimError:
         """Return the error for a problem with a key, written `table.key` in a table."""
@@ -156,6 +163,7 @@ class _Reader:
             parameters=self.parameters,
             rows=rows,
             answers=self._answers(),
+            growing=self.growing,
         )
         for key in claim.instance_keys():
             try:
@@ -191,15 +199,41 @@ class _Reader:
         for k, name in enumerate(self.parameters):
             where = self.document.where("instances", name)
             try:
-                ranges.append(read_range(self.instances[name], self.parameters[:k], where))
+                range_ = read_range(self.instances[name], self.parameters[:k], where, may_grow=True)
             except ClaimError as error:
                 raise ClaimError(f"{error}{keys.belongs(name)}") from None
+            ranges.append(range_)
+            self._check_growth(name, range_)
         keep = None
         if "where" in self.instances:
             keep = self._truth(
                 self.instances["where"], Scope(self.parameters), "instances", "where"
             )
+            self._check_steady("instances.where", keep)
         return find_rows(self.parameters, ranges, keep, self.document.where("instances"))
+
+    def _check_growth(self, name: str, range_: Range) -> None:
+        """Take a parameter without a last value for the growing one, if nothing forbids it."""
+        for bound in (range_.low, range_.high):
+            if isinstance(bound, Expression):
+                self._check_steady(f"instances.{name}", bound)
+        if not range_.endless:
+            return
+        path = f"instances.{name}"
+        if self.growing is not None:
+            raise self.fault(
+                path, f"only one parameter may be endless, and {self.growing} is; give an upper end"
+            )
+        self.growing = name
+        for key in ("ends", "required", "forbidden"):
+            if key in self.top:
+                raise self.fault(key, f"an endless claim has no {key}; give {name} an upper end")
+
+    def _check_steady(self, path: str, rule: Expression) -> None:
+        if self.growing is not None and rule.mentions(self.growing):
+            raise self.fault(
+                path, f"{self.growing} is endless, so nothing else under [instances] may name it"
+            )
 
     def _check_names(self, names: Sequence[str], path: str) -> None:
         if len(names) > MAX_NAMES:
@@ -330,6 +364,12 @@ class _Reader:
         truth: Expression | bool | None = None
         for key, value in self.answers.items():
             if isinstance(value, int) and not isinstance(value, bool):
+                if self.growing is not None:
+                    raise self.fault(
+                        f"answers.{key}",
+                        "an endless claim has endlessly many answers, and no count of them; "
+                        f"write an expression in {self.growing}, true or false",
+                    )
                 if value < 0:
                     raise self.fault(f"answers.{key}", f"{shown(value)} is not a count")
                 counts[key] = check_integer(value, self.document.where("answers", key))

@@ -66,6 +66,10 @@ class Expression:
     sort: str
     tree: ast.expr = field(repr=False, compare=False)
 
+    def mentions(self, name: str) -> bool:
+        """Return whether the rule names a parameter."""
+        return any(isinstance(n, ast.Name) and n.id == name for n in ast.walk(self.tree))
+
     @cached_property
     def _over_rows(self) -> Run:
         return bind(self.source, self.tree, self.scope, row=None)

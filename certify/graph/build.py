@@ -9,8 +9,10 @@ from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from itertools import product
 from pathlib import Path
+from typing import cast
 
 from certify.claim.claim import Claim, Key
+from certify.claim.endless import endless_key
 from certify.claim.instances import MAX_INSTANCES, Row, in_instance, name_key, number
 from certify.claim.parts import Rule, Vertex
 from certify.errors import ClaimError, GraphFileError
@@ -26,6 +28,8 @@ MAX_CANDIDATES = 100_000
 class Instance:
     """An instance and its graph.
 
+    An instance of an endless claim has no single graph: its graph is empty here, and
+    its key holds the text of the endless range.
     source: for a graph of a list, a file of the list's format that holds it
     alone; None for a rule.
     """
@@ -47,6 +51,11 @@ def instances(claim: Claim, folder: Path) -> Iterator[Instance]:
     Errors: ClaimError for a rule, GraphFileError for a list, when the instance
     concerned is asked for.
     """
+    if claim.growing is not None:
+        for row in claim.rows:
+            # Who does arithmetic with keys never meets those of endless claims.
+            yield Instance(cast(Key, endless_key(claim, row)), Graph((), ()))
+        return
     if isinstance(claim.graphs, Rule):
         for key in claim.instance_keys():
             yield Instance(key, build_graph(claim, key))

@@ -15,7 +15,7 @@ from typing import BinaryIO
 
 from certify.errors import GraphFileError
 from certify.graph.graph import Edge, Graph
-from certify.graph.simple import check_size, edge_of, numbers, simple_graph
+from certify.graph.simple import MAX_EDGES, check_size, edge_of, numbers, simple_graph
 
 MAX_LINE = 1 << 24
 
@@ -38,13 +38,16 @@ def read_lines(file: BinaryIO, shown: str) -> Iterator[tuple[Graph, bytes]]:
         where = f"{shown}:{number}"
         if len(line) > MAX_LINE:
             raise GraphFileError(f"{where}: this line is too long for a graph")
+        ended = line.endswith(b"\n")
         line = line.removesuffix(b"\n").removesuffix(b"\r")
         if number == 1:
             headers = [header for header in _HEADERS if line.startswith(header)]
             line = line.removeprefix(headers[0]) if headers else line
-            if headers and not line:
-                continue
-        yield read_line(line, where), line + b"\n"
+        graph = read_line(line, where)
+        if line.startswith(b":") and not ended:
+            # graph6 shows by its length that it is whole; sparse6 does not.
+            raise GraphFileError(f"{where}: the line has no end, so it may be cut short")
+        yield graph, line + b"\n"
         empty = False
     if empty:
         raise GraphFileError(f"{shown}: the file holds no graph")
@@ -68,7 +71,13 @@ def read_line(line: bytes, where: str) -> Graph:
     bits = b"".join([_BITS[code] for code in data])
     if sparse:
         return simple_graph(numbers(0, n), _sparse_edges(n, bits, where))
-    return Graph(numbers(0, n), tuple(_edges(n, bits, where)))
+    return _within_limits(Graph(numbers(0, n), tuple(_edges(n, bits, where))), where)
+
+
+def _within_limits(graph: Graph, where: str) -> Graph:
+    if graph.m > MAX_EDGES:
+        raise GraphFileError(f"{where}: the graph has more than {MAX_EDGES:,} edges")
+    return graph
 
 
 def _count(body: bytes, where: str) -> tuple[int, bytes]:

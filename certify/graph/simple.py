@@ -9,6 +9,7 @@ from certify.errors import GraphFileError
 from certify.graph.graph import Edge, Graph, Label, edge_between
 
 MAX_VERTICES = 10_000
+MAX_EDGES = 1 << 23
 
 
 def check_size(n: int, where: str) -> None:
@@ -33,8 +34,14 @@ def edge_of(u: int, v: int, where: str) -> Edge:
 
 
 def simple_graph(labels: Iterable[Label], edges: Iterable[Edge]) -> Graph:
-    """Return the graph with these edges, each once. Cost: O(n + m log m)."""
-    return Graph(tuple(labels), tuple(sorted(set(edges))))
+    """Return the graph with these edges, each once.
+
+    Errors: GraphFileError when there are more than 2^23. Cost: O(n + m log m).
+    """
+    distinct = sorted(set(edges))
+    if len(distinct) > MAX_EDGES:
+        raise GraphFileError(f"the graph has more than {MAX_EDGES:,} edges, the most allowed")
+    return Graph(tuple(labels), tuple(distinct))
 
 
 @lru_cache(maxsize=64)

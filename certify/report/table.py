@@ -44,6 +44,17 @@ def render_table(rows: Sequence[Row]) -> str:
     return table + _render_counts(rows)
 
 
+def render_endless_table(rows: Sequence[tuple[str, str]]) -> str:
+    """Return the table of an endless claim: for each row for which values the object exists.
+
+    rows: the name of each row and the set, in words.
+    """
+    table = Table("instance", "exists for", box=box.SIMPLE)
+    for name, exists in rows:
+        table.add_row(name, exists)
+    return _text(table).rstrip()
+
+
 def _render_runs(name: str, rows: Sequence[Row]) -> str:
     table = Table(name, "answer", "evidence", box=box.SIMPLE)
     place = 0

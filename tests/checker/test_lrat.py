@@ -60,7 +60,7 @@ def test_an_empty_clause_without_hints_proves_nothing() -> None:
 def test_a_header_that_promises_missing_clauses_is_not_given_to_a_referee() -> None:
     check_dimacs("p cnf 2 1\n1 2 0\n")
     for text in ("p cnf 2 5\n1 2 0\n", "p cnf 2 0\n1 2 0\n", "p cnf 1 1\n1 2 0\n", "1 2 0\n", ""):
-        with pytest.raises(ValueError, match="formula|header|variable"):
+        with pytest.raises(ValueError, match=r"formula|header|variable"):
             check_dimacs(text)
 
 

@@ -34,7 +34,7 @@ GRAPHML = """\
 
 def test_the_largest_graphs(tmp_path: Path) -> None:
     # ~AqO is 10,000 vertices: 10000 = 2 * 64^2 + 28 * 64 + 16, each part plus 63.
-    [found] = read(tmp_path, ":~A[O", "a.s6")
+    [found] = read(tmp_path, ":~A[O\n", "a.s6")
     assert (found.n, found.m) == (10_000, 0)
     assert "10,000" in refusal(tmp_path, ":~A[P", "a.s6")
     assert "10,000" in refusal(tmp_path, "p edge 10001 0\n", "a.col")

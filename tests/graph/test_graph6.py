@@ -43,7 +43,7 @@ def test_examples_of_the_format(tmp_path: Path) -> None:
     # The worked examples of formats.txt (B. D. McKay, nauty), from memory.
     [five] = read(tmp_path, "DQc\n", "a.g6")
     assert (five.n, five.edges) == (5, ((0, 2), (0, 4), (1, 3), (3, 4)))
-    [seven] = read(tmp_path, ":Fa@x^", "b.s6")
+    [seven] = read(tmp_path, ":Fa@x^\n", "b.s6")
     assert (seven.n, seven.edges) == (7, ((0, 1), (0, 2), (1, 2), (5, 6)))
     # The Petersen graph as House of Graphs gives it (from memory).
     [petersen] = read(tmp_path, "IheA@GUAo\r\n", "c.g6")
@@ -51,8 +51,8 @@ def test_examples_of_the_format(tmp_path: Path) -> None:
     assert [g.n for g in read(tmp_path, "?\n@\n:?\n:@\nA_\n", "d.g6")] == [0, 1, 0, 1, 2]
 
 
-def test_header_on_a_line_of_its_own_is_no_graph(tmp_path: Path) -> None:
-    assert [g.n for g in read(tmp_path, ">>graph6<<\nA_\nA?\n", "a.g6")] == [2, 2]
+def test_a_header_stands_before_the_first_graph(tmp_path: Path) -> None:
+    assert [g.n for g in read(tmp_path, ">>graph6<<A_\nA?\n", "a.g6")] == [2, 2]
 
 
 def test_reading_is_lazy(tmp_path: Path) -> None:
@@ -63,7 +63,7 @@ def test_reading_is_lazy(tmp_path: Path) -> None:
 
 
 def test_sources_hold_one_graph_each(tmp_path: Path) -> None:
-    path = written(tmp_path, ">>graph6<<A_\nBw\r\n:Fa@x^", "a.g6")
+    path = written(tmp_path, ">>graph6<<A_\nBw\r\n:Fa@x^\n", "a.g6")
     pairs = list(read_sources(path))
     assert [source for _, source in pairs] == [b"A_\n", b"Bw\n", b":Fa@x^\n"]
     for graph, source in pairs:
@@ -96,8 +96,9 @@ def test_a_line_cut_short_is_refused_or_a_smaller_graph(graph: nx.Graph, cut: in
     ("content", "words"),
     [
         ("", ["a.g6: ", "no graph"]),
-        (">>graph6<<", ["no graph"]),
-        (">>graph6<<\n", ["no graph"]),
+        (">>graph6<<", ["a.g6:1: an empty line"]),
+        (">>graph6<<\nA_\n", ["a.g6:1: an empty line"]),
+        ("A_\n:Fa@x^", ["a.g6:2: ", "no end"]),
         (">>grahp6<<A_\n", ["a.g6:1: column 1", "not part of graph6"]),
         ("A_\n>>graph6<<A_\n", ["a.g6:2: column 1"]),
         ("A_\n\nA_\n", ["a.g6:2: an empty line"]),

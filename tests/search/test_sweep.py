@@ -175,6 +175,7 @@ def test_blocks_do_not_change_the_result(monkeypatch: pytest.MonkeyPatch) -> Non
     question = famous("Coxeter")
     whole = find_sweep(question, budget=Budget.of(AMPLE))
     monkeypatch.setattr("certify.search.sweep.BLOCK", 7)
+    monkeypatch.setattr("certify.search.states.BLOCK", 7)
     assert find_sweep(question, budget=Budget.of(AMPLE)) == whole
     assert isinstance(whole, Sweep)  # Tutte, Canad. Math. Bull. 3 (1960) 1-5
     compare_with_definition(question, whole.order)
