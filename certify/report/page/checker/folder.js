@@ -1,0 +1,170 @@
+// The front door: a folder of evidence (FORMAT.md, sections 1 and 5).
+//
+//   for await (const item of checkFolder(read)) ...
+//
+// `read(name, most)` returns the bytes of a file, or throws Rejected when it is missing, is no
+// regular file, or has more than `most` bytes. Items are { instance, answer, kind, verdict,
+// reason }, one for each instance, in order; the last item is the verdict on the whole:
+// { final: true, verdict, reason, instances, accepted, exists, impossible, settled, onlyOpen }. No
+// acceptance of the whole is given before everything has been read.
+
+import { Rejected, need, readJson, writeJson, exactly, decodeText } from "./strict.js";
+import { Sha256 } from "./sha256.js";
+import { readClaim } from "./claims.js";
+import { buildByRule, buildInstance } from "./graphs.js";
+import { readList } from "./lists.js";
+import { LeftOpen, readRecord, checkRecord } from "./records.js";
+import { checkEndless } from "./endless.js";
+
+const MANIFEST = "manifest.json";
+const EVIDENCE = "evidence.jsonl";
+const MOST_FILE = 2 ** 28;
+const MOST_EVIDENCE = 2 ** 32;
+const MOST_LINE = 2 ** 26;
+const MOST_INSTANCES = 100000;
+
+// Relative, with `/` between parts; all characters are printable, and none is `\` or `:`.
+function checkName(name) {
+  const parts = name.split("/");
+  need(parts.every((part) => part !== "" && part !== "." && part !== ".."), `'${name}' is no file name`);
+  need(!/[\\:]|(?! )[\p{C}\p{Z}]/u.test(name), `'${name}' has a character that no file name has`);
+  return name;
+}
+
+function readManifest(bytes) {
+  const value = readJson(decodeText(bytes, MANIFEST));
+  const [claim, format, digests] = exactly(value, ["claim", "format", "sha256"], MANIFEST);
+  need(format === 1, "the format is not 1");
+  need(typeof claim === "string" && !checkName(claim).includes("/"), "the claim's name has one part");
+  need(digests instanceof Map, "sha256 is not an object");
+  for (const [name, digest] of digests) {
+    checkName(name);
+    need(typeof digest === "string" && /^[0-9a-f]{64}$/.test(digest), `${name}: not a SHA-256 digest`);
+  }
+  need(claim !== EVIDENCE && claim !== MANIFEST && !digests.has(MANIFEST), "the files are not different ones");
+  return { claim, digests };
+}
+
+// The files that the manifest lists, all of them with the digest it says.
+class Files {
+  constructor(read) {
+    const { claim, digests } = readManifest(read(MANIFEST, MOST_LINE));
+    this.claim = claim;
+    this.contents = new Map();
+    this.used = new Set();
+    for (const [name, digest] of digests) {
+      const bytes = read(name, name === EVIDENCE ? MOST_EVIDENCE : MOST_FILE);
+      need(new Sha256().update(bytes).hex() === digest, `${name} has changed since the manifest was written`);
+      this.contents.set(name, bytes);
+    }
+  }
+
+  get(name) {
+    need(this.contents.has(name), `${name} is not listed in ${MANIFEST}`);
+    this.used.add(name);
+    return this.contents.get(name);
+  }
+
+  checkAllUsed() {
+    for (const name of this.contents.keys()) need(this.used.has(name), `${name} belongs to nothing`);
+  }
+}
+
+// The lines of evidence.jsonl; a line without an end is handed out as null.
+function* linesOf(bytes) {
+  for (let at = 0; at < bytes.length; ) {
+    const end = bytes.indexOf(10, at);
+    yield end < 0 || end - at >= MOST_LINE ? null : bytes.subarray(at, end);
+    at = end < 0 ? bytes.length : end + 1;
+  }
+}
+
+// The instances: { name, key, values, build }; `name` is written as in a record.
+function listInstances(claim, files) {
+  if (claim.list !== null) {
+    const { name, format } = claim.list;
+    need(checkName(name) !== files.claim && name !== EVIDENCE && name !== MANIFEST, "the files are not different ones");
+    const builders = readList(files.get(name), format);
+    need(builders.length <= MOST_INSTANCES, "more than 100,000 graphs");
+    return builders.map((build, i) => ({ name: i + 1, key: String(i + 1), values: [], build }));
+  }
+  const growing = claim.endless?.growing;
+  return claim.rows.map((values) => {
+    const text = (parameter, i) => (parameter === growing ? `${values[i]}..` : values[i]);
+    const name = new Map(claim.parameters.map((parameter, i) => [parameter, text(parameter, i)]));
+    const sorted = [...claim.parameters].sort().map((parameter) => `${parameter}=${name.get(parameter)}`);
+    return { name, key: sorted.join(",") || "only", values, build: () => buildByRule(claim.rule, values) };
+  });
+}
+
+// A verdict on one instance. An error of the claim is not caught: it is one of the folder.
+function checkInstance(instance, line, claim, files) {
+  const isEndless = claim.endless !== null;
+  const built = isEndless ? null : buildInstance(claim, instance.build(), instance.values);
+  const claimed = isEndless ? undefined : claim.answers.each?.({ parameters: instance.values });
+  const item = { instance: instance.name, answer: "open", kind: "none", verdict: "rejected", reason: "" };
+  try {
+    need(line !== undefined, "there is no record of it");
+    need(line !== null, "the line has no end, or is too long");
+    const record = readRecord(line);
+    need(writeJson(record.get("instance")) === writeJson(instance.name), "the record is of another instance");
+    for (const key of ["answer", "kind"]) {
+      need(typeof record.get(key) === "string", `'${key}' is not a text`);
+      item[key] = record.get(key);
+    }
+    const endless = (body) => checkEndless(body, claim, instance.values);
+    checkRecord(record, built, { key: instance.key, read: (name) => files.get(name), endless });
+    need(claimed === undefined || claimed === item.answer, `the claim says ${claimed}, and the evidence shows ${item.answer}`);
+    // Accepted: the record is of this instance, its evidence shows its answer, and the claim
+    // says no other.
+    return { ...item, verdict: "accepted", reason: `${item.kind} checked` };
+  } catch (error) {
+    if (!(error instanceof Rejected)) throw error;
+    return { ...item, reason: error.message, open: error instanceof LeftOpen };
+  }
+}
+
+async function* checkFolder(read) {
+  const sums = { instances: 0, accepted: 0, exists: 0, impossible: 0, settled: 0 };
+  let onlyOpen = true;
+  try {
+    const files = new Files(read);
+    const claim = readClaim(files.get(files.claim));
+    const instances = listInstances(claim, files);
+    sums.instances = instances.length;
+    const lines = linesOf(files.get(EVIDENCE));
+    for (const instance of instances) {
+      const { open = false, ...item } = checkInstance(instance, lines.next().value, claim, files);
+      if (item.verdict === "accepted") {
+        sums.accepted += 1;
+        sums[item.answer] += 1;
+      } else onlyOpen &&= open;
+      yield item;
+    }
+    need(lines.next().done, `${EVIDENCE}: a line too many`);
+    const rest = sums.accepted < sums.instances ? "an instance is not accepted" : null;
+    if (rest === null || onlyOpen) files.checkAllUsed();
+    if (rest !== null) throw onlyOpen ? new LeftOpen(rest) : new Rejected(rest);
+    for (const [answer, count] of claim.answers.counts) {
+      need(sums[answer] === count, `the claim says ${answer} for ${count} instances, and the evidence shows it for ${sums[answer]}`);
+    }
+    // Accepted, here and nowhere else: every instance has exactly one record, in order, every
+    // record is accepted, the answers agree with the claim, and every listed file was needed.
+    yield { final: true, verdict: "accepted", reason: null, onlyOpen: false, ...sums };
+  } catch (error) {
+    if (!(error instanceof Rejected)) throw error;
+    yield { final: true, verdict: "rejected", reason: error.message, onlyOpen: error instanceof LeftOpen, ...sums };
+  }
+}
+
+// `read` for files that are already there: an object or a Map of name -> Uint8Array.
+function readerOf(files) {
+  const known = files instanceof Map ? files : new Map(Object.entries(files));
+  return (name, most) => {
+    need(known.has(name), `${name} is missing`);
+    need(known.get(name).length <= most, `${name} is too long`);
+    return known.get(name);
+  };
+}
+
+export { checkFolder, readerOf };
