@@ -24,7 +24,7 @@ def read_lines(data: bytes) -> Iterator[Graph]:
 
 
 def _read_line(line: bytes) -> Graph:
-    body = line.removesuffix(b"\n").removesuffix(b"\r")
+    body = line.removesuffix(b"\r\n").removesuffix(b"\n")
     if not body.startswith(b":"):
         return _read_graph6(body)
     if not line.endswith(b"\n"):

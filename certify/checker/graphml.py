@@ -30,6 +30,8 @@ def read_graphml(data: bytes) -> Iterator[Graph]:
     reader = _Reader()
     try:
         reader.parser.Parse(data, True)
+        if reader.is_ascii and not data.isascii():
+            raise BadClaim("the GraphML file says that it is ASCII, and is not")
     except expat.ExpatError as error:
         raise BadClaim(f"not XML: {error}") from None
     if not reader.graphs:
@@ -43,6 +45,7 @@ class _Reader:
     def __init__(self) -> None:
         self.path = [""]
         self.graphs = 0
+        self.is_ascii = False
         self.number: dict[str, int] = {}
         self.ends: list[tuple[str, str]] = []
         self.parser = expat.ParserCreate("utf-8", " ")
@@ -62,9 +65,11 @@ class _Reader:
     def _refuse_doctype(self, *_: object) -> None:
         raise BadClaim("a GraphML file with a document type is not read")
 
-    def _check_declaration(self, _version: str, encoding: str | None, _alone: int) -> None:
-        if encoding is not None and encoding.lower() not in ("utf-8", "us-ascii", "ascii"):
-            raise BadClaim("the GraphML file says that it is not UTF-8")
+    def _check_declaration(self, version: str, encoding: str | None, _alone: int) -> None:
+        named = (encoding or "utf-8").lower()
+        if version != "1.0" or named not in ("utf-8", "us-ascii", "ascii"):
+            raise BadClaim("the GraphML file says that it is not XML 1.0, or not UTF-8")
+        self.is_ascii = named != "utf-8"
 
     def _start(self, full: str, attributes: dict[str, str]) -> None:
         around, name = self.path[-1], full.removeprefix(_SPACE)
@@ -95,5 +100,5 @@ class _Reader:
         self.path.pop()
 
     def _text(self, text: str) -> None:
-        if self.path[-1] not in _NOTES and text.strip():
+        if self.path[-1] not in _NOTES and text.strip(" \t\r\n"):
             raise BadClaim(f"text inside the GraphML element {self.path[-1]!r}")

@@ -39,7 +39,7 @@ def read_lines(file: BinaryIO, shown: str) -> Iterator[tuple[Graph, bytes]]:
         if len(line) > MAX_LINE:
             raise GraphFileError(f"{where}: this line is too long for a graph")
         ended = line.endswith(b"\n")
-        line = line.removesuffix(b"\n").removesuffix(b"\r")
+        line = line.removesuffix(b"\r\n").removesuffix(b"\n")
         if number == 1:
             headers = [header for header in _HEADERS if line.startswith(header)]
             line = line.removeprefix(headers[0]) if headers else line

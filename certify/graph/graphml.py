@@ -43,13 +43,14 @@ class _Reader:
         self.parser = expat.ParserCreate("utf-8", " ")
         self.open: list[str] = [""]
         self.graphs = 0
+        self.is_ascii = False
         self.nodes: dict[str, int] = {}
         self.edges: list[tuple[str, str, int]] = []  # source, target, line
 
     def read(self, data: bytes) -> Graph:
         parser = self.parser
         parser.StartDoctypeDeclHandler = self.refuse_doctype
-        parser.XmlDeclHandler = self.check_encoding
+        parser.XmlDeclHandler = self.check_declaration
         parser.StartElementHandler = self.start
         parser.EndElementHandler = self.end
         parser.CharacterDataHandler = self.text
@@ -59,6 +60,8 @@ class _Reader:
             raise GraphFileError(
                 f"{self.shown}:{error.lineno}: not XML: {expat.ErrorString(error.code)}"
             ) from None
+        if self.is_ascii and not data.isascii():
+            raise GraphFileError(f"{self.shown}: the file says that it is ASCII, and is not")
         if not self.graphs:
             raise GraphFileError(f"{self.shown}: the file holds no graph element")
         return simple_graph(self.nodes, [self.edge(*edge) for edge in self.edges])
@@ -69,9 +72,13 @@ class _Reader:
     def refuse_doctype(self, *_: object) -> None:
         self.fault("a document type declaration is not allowed; remove it")
 
-    def check_encoding(self, _version: str, encoding: str | None, _standalone: int) -> None:
-        if encoding and encoding.lower() not in ("utf-8", "us-ascii", "ascii"):
+    def check_declaration(self, version: str, encoding: str | None, _standalone: int) -> None:
+        if version != "1.0":
+            self.fault(f"XML {version} is not supported; GraphML is XML 1.0")
+        named = (encoding or "utf-8").lower()
+        if named not in ("utf-8", "us-ascii", "ascii"):
             self.fault(f"the encoding {encoding} is not supported; save the file as UTF-8")
+        self.is_ascii = named != "utf-8"
 
     def start(self, name: str, attributes: dict[str, str]) -> None:
         around = self.open[-1]
@@ -96,7 +103,7 @@ class _Reader:
         self.open.pop()
 
     def text(self, text: str) -> None:
-        if text.strip() and self.open[-1] not in _ANYTHING:
+        if text.strip(" \t\r\n") and self.open[-1] not in _ANYTHING:
             self.fault(f"text has no place inside {self.open[-1]}")
 
     def start_graph(self, attributes: dict[str, str]) -> None:

@@ -290,10 +290,6 @@ def by_hand() -> list[list[str]]:
     return [json.loads(line) for line in lines]
 
 
-LAXER = {"decl ascii nonascii", "decl 1.1", "text nbsp", "cr"}
-"""Refused by FORMAT.md (no XML 1.0, text, no line end) and read by the checker in Python."""
-
-
 def test_claims_and_lists_made_by_hand_are_read_as_the_format_says() -> None:
     cases = by_hand()
     lists = {"g.g6": b"C~\nBw\n", "g.s6": b"C~\n:An\n", "g.col": b"p col 3 1\ne 1 3\n"}
@@ -316,7 +312,7 @@ def test_claims_and_lists_made_by_hand_are_read_as_the_format_says() -> None:
     ):
         if ("refused" if seen == REFUSED else "read") != expected:
             wrong.append((form, name, "not", expected))
-        if seen != other and name not in LAXER:
+        if seen != other:
             wrong.append((form, name, seen, other))
     assert wrong == []
 
