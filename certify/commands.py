@@ -1,4 +1,4 @@
-"""The command line: prove, check, decide, explain, appendix.
+"""The command line: prove, check, decide, explain, appendix, page, pack.
 
 Exit codes: 0 all is as claimed and accepted; 2 bad input or usage; 3 a claim is
 contradicted, or evidence rejected; 4 something is left open.
@@ -16,7 +16,7 @@ from rich.console import Console
 from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn, TimeRemainingColumn
 
 from certify.checker import check_folder
-from certify.checker.__main__ import check_and_print
+from certify.checker.__main__ import check_and_print, find_folders
 from certify.errors import CertifyError, ContradictionError, InputError, OpenError
 from certify.evidence.endless import exists_for
 from certify.flow import Outcome, decide_file, prove
@@ -24,6 +24,8 @@ from certify.graph.question import BUILDERS
 from certify.interface import explain
 from certify.report.appendix import FORMS, render_appendix, write_text
 from certify.report.lasting import find_lasting
+from certify.report.pack import write_pack
+from certify.report.page.page import write_site
 from certify.report.referee import PROGRAM, ask_referee, describe, find_referee
 from certify.report.table import Row, render_endless_table, render_table
 from certify.search.ladder import KINDS, Limits
@@ -144,9 +146,10 @@ def decide_command(
 @json_option
 def check_command(folders: tuple[Path, ...], referee: str | None, as_json: bool) -> None:
     """Check evidence, from its files alone."""
-    codes = [check_and_print(check_folder(folder), as_json=as_json) for folder in folders]
+    found = [folder for item in folders for folder in find_folders(item)]
+    codes = [check_and_print(check_folder(folder), as_json=as_json) for folder in found]
     if referee is not None:
-        codes += [_ask_referee(folder, as_json=as_json) for folder in folders]
+        codes += [_ask_referee(folder, as_json=as_json) for folder in found]
     sys.exit(3 if 3 in codes else max(codes))
 
 
@@ -193,9 +196,56 @@ def appendix_command(folder: Path, form: str, out: Path | None) -> None:
         click.echo(appendix.text, nl=False)
     else:
         write_text(out, appendix.text)
-    if appendix.left_open:
-        noun = "instance" if appendix.left_open == 1 else "instances"
-        raise OpenError(f"left open: {appendix.left_open} {noun}, as the appendix says")
+    _tell_open(appendix.left_open, "appendix")
+
+
+@commands.command("page")
+@click.argument("folders", type=existing_folder, nargs=-1, required=True, metavar="FOLDER...")
+@click.option(
+    "--out",
+    "site",
+    type=click.Path(file_okay=False, path_type=Path),
+    default="site",
+    show_default=True,
+    metavar="SITE",
+    help="The folder that the pages go to.",
+)
+def page_command(folders: tuple[Path, ...], site: Path) -> None:
+    """Check each FOLDER, and write it as a page that checks itself.
+
+    A page is one file that needs no server and no net: to put on a site, or to send.
+    """
+    written, left_open = write_site(folders, site)
+    for path in written:
+        click.echo(f"page: {path}")
+    _tell_open(left_open, "page")
+
+
+@commands.command("pack")
+@click.argument("folders", type=existing_folder, nargs=-1, required=True, metavar="FOLDER...")
+@click.option(
+    "-o",
+    "--out",
+    "archive",
+    type=click.Path(dir_okay=False, path_type=Path),
+    required=True,
+    metavar="FILE.zip",
+    help="The archive to write.",
+)
+def pack_command(folders: tuple[Path, ...], archive: Path) -> None:
+    """Check each FOLDER, and pack it for a deposit.
+
+    With the checker as one file, the format, an appendix and a page of each.
+    """
+    names = write_pack(folders, archive)
+    click.echo(f"{archive}: {len(names)} files; README.md in it says how to check them")
+
+
+def _tell_open(left_open: int, where: str) -> None:
+    """Raise what the exit code has to say when something published is open."""
+    if left_open:
+        noun = "instance" if left_open == 1 else "instances"
+        raise OpenError(f"left open: {left_open} {noun}, as the {where} says")
 
 
 def _read_kinds(text: str | None) -> frozenset[str]:

@@ -1,5 +1,7 @@
 """python -m certify.checker [--json] FOLDER ...: check folders of evidence.
 
+A FOLDER that is none itself may hold such folders: then each of these is checked.
+
 Exit code: 0 every claim is accepted; 2 wrong usage; 3 something is rejected;
 4 nothing is rejected, and something is left open.
 """
@@ -12,6 +14,7 @@ import sys
 from pathlib import Path
 from typing import TextIO
 
+from .files import EVIDENCE, MANIFEST
 from .folder import FolderCheck, complain, describe
 
 
@@ -25,8 +28,28 @@ def main(arguments: list[str]) -> int:
             say(f"{item}: not a folder", sys.stderr)
         say("usage: python -m certify.checker [--json] FOLDER ...", sys.stderr)
         return 2
-    codes = [check_and_print(FolderCheck(Path(item)), as_json=as_json) for item in folders]
+    found = [folder for item in folders for folder in find_folders(Path(item))]
+    codes = [check_and_print(FolderCheck(folder), as_json=as_json) for folder in found]
     return 3 if 3 in codes else max(codes)
+
+
+def find_folders(folder: Path) -> list[Path]:
+    """Return the folder itself, or, if it holds no evidence, those right below that do.
+
+    One of the two files is enough: a folder that has lost the other has to be
+    rejected, not passed over. So has a folder in which there is nothing at all. Names with
+    a point in front are those of unfinished work.
+    """
+    try:
+        inside = sorted(item for item in folder.iterdir() if not item.name.startswith("."))
+    except OSError:
+        return [folder]
+    inner = [item for item in inside if _holds_evidence(item)]
+    return [folder] if _holds_evidence(folder) or not inner else inner
+
+
+def _holds_evidence(folder: Path) -> bool:
+    return any(os.path.lexists(folder / name) for name in (MANIFEST, EVIDENCE))
 
 
 def check_and_print(check: FolderCheck, *, as_json: bool) -> int:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Collection, Sequence
 from dataclasses import dataclass
 from typing import Any
 
@@ -21,6 +21,7 @@ _KINDS = {
     "cases": ("cases", "c"),
     "sweep": ("a computation (states)", "s"),
     "clauses": ("a computation (clauses)", "l"),
+    "endless": ("repeating states", "e"),
     "none": ("", "?"),
 }
 _ANSWERS = {"exists": "exists", "impossible": "none", "open": "open"}
@@ -28,11 +29,16 @@ _ANSWERS = {"exists": "exists", "impossible": "none", "open": "open"}
 
 @dataclass(frozen=True)
 class Shown:
-    """An instance of the table. proposition: its name where it is proved, "" if there is none."""
+    """An instance of the table, or what follows for ever.
+
+    proposition: its name where it is proved, "" if there is none. said: the answer, "" if
+    the record says it.
+    """
 
     key: AnyKey
     record: dict[str, Any]
     proposition: str
+    said: str = ""
 
 
 def show_answers(words: ClaimWords, shown: Sequence[Shown]) -> Grid | Sheet:
@@ -64,16 +70,17 @@ def _sheet(words: ClaimWords, shown: Sequence[Shown]) -> Sheet:
         rows.append(
             (
                 *_values(run),
-                _ANSWERS[record["answer"]],
+                items[0].said or _ANSWERS[record["answer"]],
                 _tell_kind(words, record["kind"]),
                 span(item.record["length"] for item in items) if record["kind"] != "none" else "",
                 _refer(items),
             )
         )
+    lengths = explain_lengths(words, [item.record["kind"] for item in shown])
+    caption = f"For which {_what(words)} there is a {words.structure}."
     return Sheet(
-        f"For which {_what(words)} there is a {words.structure}. "
-        f"The size is {_explain_sizes(words, shown)}.",
-        (*map(formula, heads), "answer", "shown by", "size", "proved in"),
+        f"{caption} The length is {lengths}." if lengths else caption,
+        (*map(formula, heads), "answer", "shown by", "length", "proved in"),
         tuple(rows),
     )
 
@@ -86,11 +93,12 @@ def _values(run: Run) -> list[str]:
 
 
 def _values_of(first: object, last: object) -> str:
-    if first == last:
-        return formula(str(first))
+    if isinstance(first, str):
+        low = int(first.removesuffix(".."))
+        return formula(rf"{low}, {low + 1}, \dots")
     if isinstance(first, int) and last == first + 1:
         return formula(f"{first}, {last}")
-    return formula(rf"{first}, \dots, {last}")
+    return formula(str(first) if first == last else rf"{first}, \dots, {last}")
 
 
 def _refer(items: Sequence[Shown]) -> str:
@@ -106,18 +114,18 @@ def _what(words: ClaimWords) -> str:
     return "graphs of the list" if words.is_list else "instances"
 
 
-def _explain_sizes(words: ClaimWords, shown: Sequence[Shown]) -> str:
-    kinds = {item.record["kind"] for item in shown}
-    parts = []
+def explain_lengths(words: ClaimWords, kinds: Collection[str]) -> str:
+    """Return what the reading length of evidence of these kinds is; "" if there is none."""
+    kinds, parts = set(kinds), []
     if "witness" in kinds:
         parts.append(f"the number of vertices of a {words.thing}")
     if kinds & {"obstruction", "counting", "cases"}:
         parts.append("the number of integers that a reason is written with")
-    if "sweep" in kinds:
+    if kinds & {"sweep", "endless"}:
         parts.append("the number of states of a computation")
     if "clauses" in kinds:
         parts.append("the number of clauses and steps of a computation")
-    return ", or ".join(parts) if parts else "not known"
+    return ", or ".join(parts)
 
 
 def _grid(words: ClaimWords, shown: Sequence[Shown]) -> Grid | None:

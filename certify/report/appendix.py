@@ -3,7 +3,8 @@
 The folder is checked through the checker's front door before a word is written. Then
 the claim becomes a definition and a theorem (statement.py), the instances a table, every
 impossible instance, or run of instances with one lasting reason, a proposition with its
-proof, and the witnesses a list.
+proof, and the witnesses a list. Of an endless claim the instances are the small n, and
+what follows for ever is told by families.py.
 """
 
 from __future__ import annotations
@@ -12,31 +13,30 @@ import hashlib
 import json
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
-from importlib.metadata import PackageNotFoundError, version
+from itertools import islice
 from pathlib import Path
-from typing import Any
 
-from certify.checker import FolderCheck, check_folder
+from certify.checker import FolderCheck
 from certify.claim.claim import read_claim
 from certify.claim.parts import Rule
-from certify.errors import ContradictionError, InputError
-from certify.evidence.store import EVIDENCE, MANIFEST, claim_name
-from certify.graph.build import build_question, instances
-from certify.graph.graph import Graph
-from certify.graph.question import Question
-from certify.report.answers import Shown, show_answers
+from certify.errors import InputError
+from certify.evidence.store import EVIDENCE, MANIFEST
+from certify.report.accepted import need_accepted
+from certify.report.answers import Shown, explain_lengths, show_answers
 from certify.report.blocks import Block, Paragraph, Rows, mark
-from certify.report.cases import MOST_NODES
 from certify.report.document import Document, Heading, Part, Picture, Proof, Statement
 from certify.report.drawing import draw_reason
+from certify.report.families import FamilyWords
 from certify.report.inline import quote_prose, refer
+from certify.report.items import Family, Item, read_families, read_items
 from certify.report.joint import tell_jointly
-from certify.report.lasting import Settled, find_lasting
+from certify.report.lasting import find_lasting
 from certify.report.latex import set_latex_document
+from certify.report.limits import COMPUTATIONS, say_limits
 from certify.report.markdown import set_markdown_document
-from certify.report.runs import find_runs
+from certify.report.runs import find_runs, span
 from certify.report.statement import ClaimWords, define_graphs, state_claim
-from certify.report.words import HOW_TO_CHECK, Words, count_of, join, plural
+from certify.report.words import Words, join, plural
 
 FORMS: dict[str, Callable[[Document], str]] = {
     "latex": set_latex_document,
@@ -44,23 +44,6 @@ FORMS: dict[str, Callable[[Document], str]] = {
 }
 MOST_WITNESSES = 400
 """More paths or cycles than these are not printed: nobody reads them."""
-
-_COMPUTATIONS = ("sweep", "clauses")
-
-
-@dataclass(frozen=True)
-class Item:
-    """An instance: its record, read, its graph and question, and the line of the record."""
-
-    record: dict[str, Any]
-    graph: Graph
-    question: Question
-    line: int
-
-    @property
-    def settled(self) -> Settled:
-        """Return what `find_lasting` asks for."""
-        return Settled(self.record, self.graph)
 
 
 @dataclass(frozen=True)
@@ -79,19 +62,8 @@ def render_appendix(folder: Path, form: str) -> Appendix:
     not accept what is there, unless open instances are all that it misses.
     Cost: that of the check, and of the explanations.
     """
-    check = check_folder(folder)
-    complaints = [
-        f"instance {v.instance}: {v.reason}"
-        for v in check.verdicts()
-        if not (v.accepted or v.is_open)
-    ] + check.complaints
-    name = claim_name(folder)
-    if not (check.accepted or check.only_open):
-        raise ContradictionError(
-            f"{folder}: the evidence is rejected, so nothing is written: {complaints[0]}\n"
-            f"  next: certify check {folder}"
-        )
-    document = _Writer(folder, name, check).document()
+    check = need_accepted(folder, may_be_open=True)
+    document = _Writer(folder, check).document()
     return Appendix(FORMS[form](document), check.left_open)
 
 
@@ -109,28 +81,18 @@ def write_text(path: Path, text: str) -> None:
 class _Writer:
     """Reads a folder that was checked, and composes the parts."""
 
-    def __init__(self, folder: Path, name: str, check: FolderCheck) -> None:
+    def __init__(self, folder: Path, check: FolderCheck) -> None:
         self.folder, self.check = folder, check
-        self.claim = read_claim(folder / name)
-        if self.claim.growing is not None:
-            raise InputError(
-                f"{folder}: there is no appendix for endless claims yet\n"
-                f"  next: certify explain {folder} INSTANCE"
-            )
+        self.claim = read_claim(folder / check.claim_name)
         self.words = ClaimWords(self.claim, check.answers.total() + check.left_open)
         self.digests: dict[str, str] = json.loads((folder / MANIFEST).read_bytes())["sha256"]
-        lines = (folder / EVIDENCE).read_bytes().splitlines()
-        self.items = [
-            Item(
-                json.loads(line),
-                instance.graph,
-                build_question(self.claim, instance.key, instance.graph),
-                number,
-            )
-            for number, (instance, line) in enumerate(
-                zip(instances(self.claim, folder), lines, strict=True), 1
-            )
-        ]
+        self.families: list[Family] = []
+        if self.claim.growing is None:
+            self.items = list(read_items(self.claim, folder))
+        else:
+            self.families = list(read_families(self.claim, folder))
+            self.items = [item for family in self.families for item in family.small]
+        self.endless = FamilyWords(self.words, self.families, self.digests[EVIDENCE])
         self.prefix = f"evidence:{hashlib.sha256(self.claim.raw).hexdigest()[:8]}:"
 
     def document(self) -> Document:
@@ -143,17 +105,29 @@ class _Writer:
         if self.claim.statement:
             parts.append(Paragraph(quote_prose(" ".join(self.claim.statement.split()))))
         parts.append(Statement("Definition", "graphs", define_graphs(self.words)))
-        theorem = self._claim(shown)
+        theorem = self.endless.state() if self.families else self._claim(shown)
         if theorem:
+            outline = self.endless.outline() if self.families else [Paragraph(self._outline())]
             parts.append(Statement("Theorem", "claim", theorem))
-            parts.append(Proof((Paragraph(self._outline()),)))
+            parts.append(Proof(tuple(outline)))
         if self.words.has_instances:
-            parts.append(show_answers(self.words, shown))
+            parts.append(show_answers(self.words, self._with_families(shown)))
+        parts += self.endless.prove()
         parts += self._impossible(groups[0])
         parts += self._witnesses()
+        parts += self.endless.construct()
         parts += self._open()
-        parts += self._limits()
+        parts += say_limits(self.words, self.check, self.digests, self.items, self.families)
         return Document(self.claim.title or "The evidence", self.prefix, tuple(parts))
+
+    def _with_families(self, shown: Sequence[Shown]) -> list[Shown]:
+        """Return the instances of the table, every row of an endless claim up to its end."""
+        if not self.families:
+            return list(shown)
+        rows, rest = [], iter(shown)
+        for family in self.families:
+            rows += [*islice(rest, len(family.small)), self.endless.show(family)]
+        return rows
 
     def _places(self, answer: str) -> list[int]:
         return [i for i, item in enumerate(self.items) if item.record["answer"] == answer]
@@ -210,15 +184,19 @@ class _Writer:
         if not groups:
             return []
         thing = self.words.structure
+        kinds = [item.record["kind"] for group in groups for item in group]
+        small = "The small graphs: why" if self.families else "Why"
         parts: list[Part] = [
-            Heading(f"Why there is no {thing}", 2),
+            Heading(f"{small} there is no {thing}", 2),
             Paragraph(
                 f"In this section {mark('u-v')} is the edge between {mark('u')} and {mark('v')}. A "
-                f"{self.words.thing} uses an edge if it contains it."
+                f"{self.words.thing} uses an edge if it contains it. The reading length of a proof "
+                f"is {explain_lengths(self.words, kinds)}."
             ),
         ]
         for number, group in enumerate(groups, 1):
-            parts.append(Statement("Proposition", f"none:{number}", self._say_none(group)))
+            note = f"reading length {span(item.record['length'] for item in group)}"
+            parts.append(Statement("Proposition", f"none:{number}", self._say_none(group), note))
             parts.append(self._prove(group, number))
         return parts
 
@@ -238,10 +216,10 @@ class _Writer:
         kind, key = first.record["kind"], first.record["instance"]
         blocks = tell_jointly(
             [(item.graph, item.question, item.record) for item in group],
-            [self.words.instance(item.record["instance"]) for item in group],
+            [self._name(item) for item in group],
             lambda name: (self.folder / name).read_bytes(),
         )
-        if kind in _COMPUTATIONS:
+        if kind in COMPUTATIONS:
             blocks += self._point_to(first)
         rule = self.claim.graphs if isinstance(self.claim.graphs, Rule) else None
         figure = draw_reason(first.graph, first.question, kind, first.record["evidence"], rule, key)
@@ -256,6 +234,8 @@ class _Writer:
         """Return where exactly the evidence of a computation lies."""
         body = item.record["evidence"]
         place = f"line {item.line} of {mark(f'`{EVIDENCE}`')}"
+        if self.families:
+            place += f" (among the {mark('`small`')} ones, for {self._name(item)})"
         if item.record["kind"] == "sweep":
             return [
                 Paragraph(f"The order and the numbers of states are in {place}; the digest is"),
@@ -275,10 +255,14 @@ class _Writer:
         if not places:
             return []
         thing = self.words.structure
-        parts: list[Part] = [Heading(f"The {thing}s", 2)]
+        parts: list[Part] = [Heading(f"{thing}s in the small graphs", 2)]
+        if not self.families:
+            parts = [Heading(f"The {thing}s", 2)]
         close = "" if self.words.thing == "path" else ", and so are the last and the first"
         if len(places) > MOST_WITNESSES:
-            where = f"the lines {places[0] + 1} to {places[-1] + 1} of {mark(f'`{EVIDENCE}`')}"
+            first, last = self.items[places[0]].line, self.items[places[-1]].line
+            lines = f"line {first}" if first == last else f"the lines {first} to {last}"
+            where = f"{lines} of {mark(f'`{EVIDENCE}`')}"
             return [*parts, Paragraph(f"There are {len(places)}, and they are in {where}.")]
         parts.append(
             Paragraph(
@@ -290,16 +274,19 @@ class _Writer:
         for item in map(self.items.__getitem__, places):
             words = Words(item.graph, item.question)
             order = item.record["evidence"]["order"]
-            rows.append((self.words.instance(item.record["instance"]), words.sequence(order)))
+            rows.append((self._name(item), words.sequence(order)))
         return [*parts, Rows(tuple(rows))]
 
+    def _name(self, item: Item) -> str:
+        return self.words.instance(item.record["instance"])
+
     def _open(self) -> list[Part]:
-        places = self._places("open")
-        if not places:
-            return []
         keys = [item.record["instance"] for item in self.items]
         is_open = [item.record["answer"] == "open" for item in self.items]
         runs = [run for run in find_runs(keys, is_open.__getitem__) if is_open[run.places[0]]]
+        runs = self.endless.open_runs() if self.families else runs
+        if not runs:
+            return []
         told = join([self.words.run(run) for run in runs]) or self.words.any_graph
         return [
             Heading("What is left open", 2),
@@ -309,72 +296,6 @@ class _Writer:
             ),
         ]
 
-    def _limits(self) -> list[Part]:
-        check, total = self.check, len(self.items)
-        fine = check.answers.total()
-        counts = f"{check.answers['exists']} exist, {check.answers['impossible']} impossible"
-        left = (
-            f"; {check.left_open} {plural('is', check.left_open)} open" if check.left_open else ""
-        )
-        machine = sum(map(_is_for_machines, self.items))
-        said = [
-            "The evidence for all of this is in files. When this text was made, the checker of "
-            f"certify{_version()} read them, rebuilt every graph from its definition, and accepted "
-            f"{fine} of {total} {plural('instance', total)} ({counts}{left}). It shares nothing "
-            "with the program that searched, and believes nothing but the files."
-        ]
-        if machine:
-            others = len(self._places("impossible")) - machine
-            printed = "; the other proofs are printed above in full" if others else ""
-            said.append(
-                f"For {count_of(machine, 'instance')} the proof is a computation that only a "
-                f"machine repeats{printed}."
-            )
-        files = [
-            check.claim_name,
-            *([self.claim.list_name] if self.claim.list_name else []),
-            EVIDENCE,
-        ]
-        rows = tuple((mark(f"`{name}`"), mark(f"`{self.digests[name]}`")) for name in files)
-        return [
-            Heading("What was checked, and what is not claimed", 2),
-            Paragraph(" ".join(said)),
-            Paragraph(f"To check it again: {HOW_TO_CHECK}, where FOLDER holds these files:"),
-            Rows(rows),
-            Paragraph(
-                "(The digests are SHA-256.) What is proved is a statement about the graphs of "
-                f"{_definition()} and about {self._range()} alone. It says nothing about other "
-                "graphs, and whether the definition says what the paper means is for its readers "
-                "to judge."
-            ),
-        ]
-
-    def _range(self) -> str:
-        if self.words.is_list:
-            count = len(self.items)
-            return f"the {count} graphs of the file" if count > 1 else "the graph of the file"
-        if not self.claim.parameters:
-            return "this one graph"
-        return f"the {len(self.items)} {plural('instance', len(self.items))} of the table"
-
-
-def _is_for_machines(item: Item) -> bool:
-    """Return whether the proof is not printed: a computation, or too many cases."""
-    kind, body = item.record["kind"], item.record["evidence"]
-    return kind in _COMPUTATIONS or (kind == "cases" and len(body["nodes"]) > MOST_NODES)
-
 
 def _add(block: Block, text: str) -> Block:
     return Paragraph(block.text + text, block.depth) if isinstance(block, Paragraph) else block
-
-
-def _definition() -> str:
-    return f"Definition {refer('graphs')}"
-
-
-def _version() -> str:
-    """Return the version as it is told, "" when the package is not installed."""
-    try:
-        return f" (version {version('certify')})"
-    except PackageNotFoundError:
-        return ""

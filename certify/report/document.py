@@ -22,11 +22,15 @@ class Heading:
 
 @dataclass(frozen=True)
 class Statement:
-    """A numbered statement, a "Definition", "Theorem" or "Proposition". name: for references."""
+    """A numbered statement, a "Definition", "Theorem" or "Proposition".
+
+    name: for references. note: what stands in parentheses after the number.
+    """
 
     sort: str
     name: str
     text: str
+    note: str = ""
 
 
 @dataclass(frozen=True)

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from typing import Any
 
@@ -29,12 +29,12 @@ def render_endless(strip: Strip, body: dict[str, Any], n: int | None = None) -> 
     accepted. n: at least the first value of the growing parameter; None for all n.
     Cost: O(n) for one n; the graph is built for n up to MOST_SHOWN vertices only.
     """
-    told = _Told(strip, body)
+    argument = Argument(strip, body)
     if n is None:
-        return set_plain(told.explain_all())
+        return set_plain(argument.explain_all())
     if n < strip.first:
         return _render_small(strip, body, n)
-    return set_plain(told.explain_one(n))
+    return set_plain(argument.explain_one(n))
 
 
 def _render_small(strip: Strip, body: dict[str, Any], n: int) -> str:
@@ -45,11 +45,16 @@ def _render_small(strip: Strip, body: dict[str, Any], n: int) -> str:
 
 
 @dataclass(frozen=True)
-class _Told:
-    """The wording for one row."""
+class Argument:
+    """The wording for one row.
+
+    body: evidence of kind endless. maths: sets a small formula such as "n >= 42"; as
+    plain text by default.
+    """
 
     strip: Strip
     body: dict[str, Any]
+    maths: Callable[[str], str] = mark
 
     @property
     def name(self) -> str:
@@ -62,23 +67,32 @@ class _Told:
         return self.strip.claim.structure.replace("hamiltonian-", "Hamiltonian ")
 
     @property
+    def short(self) -> str:
+        """Return "path" or "cycle"."""
+        return self.thing.split()[1]
+
+    @property
     def answers(self) -> PeriodicSet:
+        """Return for which n the object exists."""
         return read_answers(self.body)
 
     def for_row(self) -> str:
         """Return "For m = 3" or nothing."""
         claim = self.strip.claim
         values = zip(claim.parameters, self.strip.row, strict=True)
-        return join([mark(f"{name} = {value}") for name, value in values if name != self.name])
+        return join(
+            [self.maths(f"{name} = {value}") for name, value in values if name != self.name]
+        )
 
     def with_n(self, text: object) -> str:
-        return mark(f"{self.name} = {text}")
+        """Return "n = 42"."""
+        return self.maths(f"{self.name} = {text}")
 
     def explain_all(self) -> list[Block]:
         """Return the whole argument."""
         row = self.for_row()
         given = f"for {row} " if row else ""
-        low = mark(f"{self.name} >= {self.strip.low}")
+        low = self.maths(f"{self.name} >= {self.strip.low}")
         answers = self.answers
         if not answers.parts():
             said = f"has no {self.thing}, for any {low}"
@@ -89,7 +103,8 @@ class _Told:
         return [
             Paragraph(f"The graph {given}{said}."),
             *self.say_strip(),
-            *self.say_sweep(),
+            *self.say_states(),
+            *self.say_periods(),
             *self.say_small(),
             *self.say_recipes(),
             Paragraph(
@@ -110,10 +125,11 @@ class _Told:
         if self.strip.long is None:
             return "each vertex by itself", ""
         long = coordinates[self.strip.long]
-        others = [mark(c) for c in coordinates if c != long]
-        return f"the vertices with one value of {mark(long)}", f"on {join(others)}, "
+        others = [self.maths(c) for c in coordinates if c != long]
+        return f"the vertices with one value of {self.maths(long)}", f"on {join(others)}, "
 
     def say_strip(self) -> list[Block]:
+        """Return of which pieces the graphs are made."""
         strip = self.strip
         layer, other = self.layer_words()
         residues = f"on residues modulo {strip.modulus}, " if strip.modulus > 1 else ""
@@ -125,13 +141,14 @@ class _Told:
         )
         return [
             Paragraph(
-                f"Call {layer} a layer; there are {mark(self.length())} of them, in a row. From "
-                f"{self.with_n(strip.first)} on the graphs are made of equal pieces. By the form "
-                f"of the rule, whether two vertices are joined depends only {other}{residues}on "
-                "how far their layers are apart and how far they are from both ends, and here "
-                f"all distances of {strip.zone} or more count as one. So an edge joins two layers "
-                f"less than {strip.zone} apart{closing}; and when {mark(self.name)} grows by "
-                f"{strip.modulus}, {more} of the same kind {plural('is', strip.modulus)} put into "
+                f"Call {layer} a layer; there are {self.maths(self.length())} of them, in a row. "
+                f"From {self.with_n(strip.first)} on the graphs are made of equal pieces. By the "
+                "form of the rule, whether two vertices are joined depends only "
+                f"{other}{residues}on how far their layers are apart and how far they are from "
+                f"both ends, and here all distances of {strip.zone} or more count as one. So an "
+                f"edge joins two layers less than {strip.zone} apart{closing}; and when "
+                f"{self.maths(self.name)} grows by {strip.modulus}, {more} of the same kind "
+                f"{plural('is', strip.modulus)} put into "
                 "the middle."
             )
         ]
@@ -148,50 +165,60 @@ class _Told:
         extra = self.strip.layers(0)
         return self.name if extra == 0 else f"{self.name} {'+' if extra > 0 else '-'} {abs(extra)}"
 
-    def say_sweep(self) -> list[Block]:
-        strip, short = self.strip, self.thing.split()[1]
+    def say_states(self) -> list[Block]:
+        """Return what the states are, and why their sets repeat."""
+        strip, name, maths = self.strip, self.name, self.maths
         left = 3 * strip.zone
         step = strip.modulus
-        grown = mark(f"{self.name} + {step}")
+        states, n = maths(f"T({name})"), maths(name)
         return [
             Paragraph(
                 f"Take the layers one after the other, and choose at each vertex the edges of the "
-                f"{short} that lead on. What the rest can see of the choices made so far is their "
-                "state: which of the vertices still to come have no, one or two chosen edges, "
-                f"and which pairs of them are the two ends of one piece of the {short}. Let "
-                f"T({self.name}) be the set of all states that can be reached when {left} layers "
-                f"are left. The vertices still to come that a state speaks of are then in the next "
-                f"{strip.zone} or in the last {strip.zone} layers, and look the same for every "
-                f"{mark(self.name)}. So T({grown}) is found from T({self.name}) by taking "
-                f"{count_of(step, 'more layer')}, in a way that does not depend on "
-                f"{mark(self.name)}, and as there are only finitely many states, these sets "
-                "repeat from some point on, for ever:"
+                f"{self.short} that lead on. What the rest can see of the choices made so far is "
+                "their state: which of the vertices still to come have no, one or two chosen "
+                "edges, and which pairs of them are the two ends of one piece of the "
+                f"{self.short}. Let {states} be the set of all states that can be reached when "
+                f"{left} layers are left. The vertices still to come that a state speaks of are "
+                f"then in the next {strip.zone} or in the last {strip.zone} layers, and look the "
+                f"same for every {n}. So {maths(f'T({name} + {step})')} is found from {states} by "
+                f"taking {count_of(step, 'more layer')}, in a way that does not depend on {n}, "
+                "and as there are only finitely many states, these sets repeat from some point "
+                "on, for ever:"
             ),
-            Rows(tuple(map(self.say_class, range(step)))),
+        ]
+
+    def say_periods(self) -> list[Block]:
+        """Return where the sets repeat, and that the answers repeat with them."""
+        left = 3 * self.strip.zone
+        every = self.maths(f"{self.name} >= {self.strip.first}")
+        return [
+            Rows(tuple(map(self.say_class, range(self.strip.modulus)))),
             Paragraph(
                 f"The last {left} layers, too, are taken from a set of states in a way that "
                 f"depends on the set alone. So the answers repeat with the sets, and those for "
-                f"one preperiod and one period, which were computed, settle every "
-                f"{mark(f'{self.name} >= {strip.first}')}."
+                f"one preperiod and one period, which were computed, settle every {every}."
             ),
         ]
 
     def say_class(self, place: int) -> tuple[str, str]:
+        """Return for one residue from where on the sets repeat, and how large they are."""
         part, strip = self.body["classes"][place], self.strip
         start = strip.first + place
         step = strip.modulus
-        head = f"{self.name} = {start}, {start + step}, ..." if step > 1 else ""
+        head = self.with_n(f"{start}, {start + step}, ...") if step > 1 else ""
         states = part["states"]
         begin = start + step * part["preperiod"]
         period = step * part["period"]
+        most = f", at most {max(states)} in one" if len(states) > 1 and any(states) else ""
         return (
             head,
-            f"T({self.name} + {period}) = T({self.name}) for all "
-            f"{mark(f'{self.name} >= {begin}')}; {count_of(len(states), 'set')} with "
-            f"{sum(states)} states, at most {max(states)} in one",
+            f"{self.maths(f'T({self.name} + {period}) = T({self.name})')} for all "
+            f"{self.maths(f'{self.name} >= {begin}')}; {count_of(len(states), 'set')} with "
+            f"{count_of(sum(states), 'state')}{most}",
         )
 
     def say_small(self) -> list[Block]:
+        """Return which evidence the small n have."""
         small, low = self.body["small"], self.strip.low
         if not small:
             return []
@@ -210,19 +237,26 @@ class _Told:
         ]
 
     def say_recipes(self) -> list[Block]:
+        """Return that the object can be written down, and for which n."""
         recipes = self.body["recipes"]
         if not recipes:
             return []
         first = join([mark(f"{r['n']} + {r['step']}k") for r in recipes])
         return [
             Paragraph(
-                f"For large {mark(self.name)} the {self.thing} can be written down, too: one for "
-                f"a small {mark(self.name)} has two equal stretches, and is made longer by "
-                "repeating what lies between them. This is stored for "
+                f"{self.say_growth()} This is stored for "
                 f"{mark(f'{self.name} =')} {first} (k = 0, 1, 2, ...); "
                 f"{mark(f'`certify explain FOLDER {self.name}=NUMBER`')} shows it."
             )
         ]
+
+    def say_growth(self) -> str:
+        """Return how the object becomes longer."""
+        n = self.maths(self.name)
+        return (
+            f"For large {n} the {self.thing} can be written down, too: one for a small {n} has two "
+            "equal stretches, and is made longer by repeating what lies between them."
+        )
 
     def explain_one(self, n: int) -> list[Block]:
         """Return the answer for one n of the strip, and why."""
@@ -236,7 +270,6 @@ class _Told:
         j = i if i < mu else mu + (i - mu) % period
         same = strip.first + place + j * strip.modulus
         left = 3 * strip.zone
-        short = self.thing.split()[1]
         can = "can be continued to" if exists else "none can be continued to"
         blocks: list[Block] = [
             Paragraph(
@@ -250,7 +283,7 @@ class _Told:
             f"The states that can be reached when {left} layers are left form the set T({n})"
             + (f", which is T({same}), as these sets repeat" if same != n else "")
             + f". There are {number(part['states'][j])} of them; "
-            + (f"from one the {short} {can} the end." if exists else f"{can} a {self.thing}.")
+            + (f"from one the {self.short} {can} the end." if exists else f"{can} a {self.thing}.")
         )
         blocks.append(Paragraph(why))
         if exists:
@@ -266,29 +299,43 @@ class _Told:
         recipe = find_recipe(self.body, n)
         if recipe is None:
             return []
-        strip, short = self.strip, self.thing.split()[1]
         times = (n - recipe.n) // recipe.step
-        graph = strip.graph(recipe.n)
-        first, last = recipe.cut + 2, recipe.cut + 1 + recipe.step
-        span = f"layer {first}" if first == last else f"layers {first} to {last}"
+        graph = self.strip.graph(recipe.n)
         blocks: list[Block] = [
-            Paragraph(f"To write it down, take this {short} for {self.with_n(recipe.n)}:"),
+            Paragraph(f"To write it down, take this {self.short} for {self.with_n(recipe.n)}:"),
             _row([graph.labels[v] for v in recipe.order]),
         ]
         if times:
-            blocks.append(Paragraph(self.say_repeat(recipe, span, times)))
+            blocks.append(Paragraph(self.say_repeat(recipe, times)))
             blocks += self.show(recipe, graph, n, times)
         return blocks
 
-    def say_repeat(self, recipe: Recipe, span: str, times: int) -> str:
-        total = times * recipe.step
-        moves = ", ".join(
-            map(
-                str,
-                (0, recipe.step, "...", total) if times > 2 else range(0, total + 1, recipe.step),
-            )
-        )
-        last = (
+    def say_construction(self, recipe: Recipe) -> list[Block]:
+        """Return what a recipe makes, for all n that it reaches."""
+        labels = self.strip.graph(recipe.n).labels
+        reached = self.with_n(f"{recipe.n} + {_times(recipe.step, 'k')}")
+        return [
+            Paragraph(
+                f"For {reached}, {self.maths('k >= 0')}, take this {self.short} for "
+                f"{self.with_n(recipe.n)}:"
+            ),
+            _row([labels[v] for v in recipe.order]),
+            Paragraph(self.say_repeat(recipe, None)),
+        ]
+
+    def say_repeat(self, recipe: Recipe, times: int | None) -> str:
+        """Return how a recipe is made longer; times: how often, None for k times."""
+        step = recipe.step
+        first, last = recipe.cut + 2, recipe.cut + 1 + step
+        span = f"layer {first}" if first == last else f"layers {first} to {last}"
+        if times is None:
+            total, copies = self.maths(_times(step, "k")), self.maths("k + 1")
+            moves = self.maths(f"0, {step}, ..., {_times(step, 'k')}")
+        else:
+            total, copies = str(times * step), str(times + 1)
+            some = (0, step, "...", total) if times > 2 else range(0, times * step + 1, step)
+            moves = ", ".join(map(str, some))
+        around = (
             f" (but if it leads to the last {self.strip.zone} layers, move its other end on by "
             f"{total} layers)"
             if self.closes_around
@@ -296,8 +343,8 @@ class _Told:
         )
         return (
             "Count the layers from 1, and let an edge belong to the lower layer of its two "
-            f"ends. Keep each edge of the first {recipe.cut + 1} layers{last}. Take those of "
-            f"{span} {times + 1} times, moved on by {moves} layers. Move all others on by "
+            f"ends. Keep each edge of the first {recipe.cut + 1} layers{around}. Take those of "
+            f"{span}, {copies} times in all, moved on by {moves} layers. Move all others on by "
             f"{total} layers."
         )
 
@@ -312,3 +359,7 @@ class _Told:
 
 def _row(labels: Sequence[Label]) -> Rows:
     return Rows((("", ", ".join(mark(name_label(label)) for label in labels)),))
+
+
+def _times(step: int, name: str) -> str:
+    return name if step == 1 else f"{step}{name}"

@@ -9,6 +9,7 @@ from certify.graph.graph import Graph
 from certify.graph.question import Question
 from certify.report.blocks import Block, Paragraph
 from certify.report.cases import render_cases
+from certify.report.classical import name_classical
 from certify.report.clauses import ReadFile, render_clauses
 from certify.report.counting import render_counting
 from certify.report.lasting import Lasting
@@ -40,7 +41,7 @@ def render_reason(
     if lasting is not None:
         span = lasting.render()
         blocks[-1:] = [
-            Paragraph(f"The same reason, with the same vertices, holds for {span}."),
+            Paragraph(_say_lasting(question, record, span)),
             Paragraph(
                 f"This speaks of the graphs for {span} alone, under the rule of the claim, "
                 "and says nothing about other instances."
@@ -77,6 +78,21 @@ def explain(
                 f"instance {instance}: no explanation is known for evidence of kind {kind!r}"
             )
     return [*blocks, Paragraph(_say_limits(words, answer))]
+
+
+def _say_lasting(question: Question, record: dict[str, Any], span: str) -> str:
+    """Return what of a reason the other instances of its run share, and what not."""
+    same = f"The same vertices give the reason for {span}."
+    if set(record["evidence"].get("set", [question.n])) <= {question.apex}:
+        same = f"The reason is of the same kind for {span}."  # no vertex is removed
+    if record["kind"] == "counting":
+        same = f"The same weights give the reason for {span}."
+        if name_classical(question, record["evidence"]) is not None:
+            same = f"This was read from weights, which are the same for {span}."
+    return (
+        f"{same} What is said here of edges, pieces and numbers is about "
+        f"{_name_instance(record['instance'])}, and may be different for the others."
+    )
 
 
 def _name_instance(key: object) -> str:

@@ -306,7 +306,7 @@ def set_number(value: Expression | int) -> str:
 def set_bounds(name: str, bounds: Range) -> str:
     """Return `lo <= name <= hi` as LaTeX; `name` is LaTeX, too."""
     low = set_number(bounds.low)
-    if bounds.high is None:
+    if bounds.endless:
         return rf"{name} \ge {low}"
     high = set_number(bounds.high)
     return f"{name} = {low}" if low == high else rf"{low} \le {name} \le {high}"

@@ -56,10 +56,11 @@ class _Setter:
         match part:
             case Heading(text=text, level=level):
                 return rf"\{'sub' * (level - 1)}section{{{self.text(text)}}}"
-            case Statement(sort=sort, name=name, text=text):
+            case Statement(sort=sort, name=name, text=text, note=note):
                 kind = f"evidence{sort.lower()}"
+                head = f"[{self.text(note)}]" if note else ""
                 return (
-                    rf"\begin{{{kind}}}\label{{{self.prefix}{name}}}"
+                    rf"\begin{{{kind}}}{head}\label{{{self.prefix}{name}}}"
                     f"\\evidencestay\n{self.text(text)}\n\\end{{{kind}}}"
                 )
             case Proof():

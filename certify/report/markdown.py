@@ -46,8 +46,9 @@ class _Setter:
         match part:
             case Heading(text=text, level=level):
                 return f"{'#' * level} {self.text(text)}"
-            case Statement(name=name, text=text):
-                return f"**{self.numbers[name]}.** {self.text(text)}"
+            case Statement(name=name, text=text, note=note):
+                head = f" ({self.text(note)})" if note else ""
+                return f"**{self.numbers[name]}{head}.** {self.text(text)}"
             case Proof(blocks=blocks, picture=picture):
                 told = [self.block(block) for block in blocks]
                 told[0] = f"*Proof.* {told[0]}" if isinstance(blocks[0], Paragraph) else told[0]

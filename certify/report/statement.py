@@ -156,7 +156,7 @@ def _tell_vertices(rule: Rule) -> str:
     if not rule.coordinates:
         (bounds,) = rule.ranges
         if rule.keep is None:
-            low, high = (set_number(value) for value in (bounds.low, bounds.high or 0))
+            low, high = (set_number(value) for value in (bounds.low, bounds.high))
             if low == high:
                 return f"the integer {formula(low)} alone"
             return f"the integers {formula(_count_up(low, high))}"

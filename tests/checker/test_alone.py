@@ -78,6 +78,33 @@ def test_it_runs_as_a_part_of_the_package(good: Files, tmp_path: Path) -> None:
     assert [line["verdict"] for line in lines] == ["accepted"] * 5
 
 
+def test_a_folder_of_folders(good: Files, alone: Path, tmp_path: Path) -> None:
+    """Each one below is checked; one that has lost a file is rejected, not passed over."""
+    command, home = ["-I", str(alone / "checker.pyz"), "."], tmp_path / "all"
+    for name in ("b", "a", ".unfinished"):
+        write_files(home / name, good)
+    (home / "appendix").mkdir()
+    (home / ".unfinished" / "manifest.json").unlink()
+    fine = run(*command, where=home)
+    assert (fine.returncode, fine.stderr) == (0, "")
+    assert [line.split(":")[:2] for line in fine.stdout.splitlines()] == [
+        ["a", " accepted"],
+        ["b", " accepted"],
+    ]
+    for lost in ("manifest.json", "evidence.jsonl"):
+        write_files(home / "c", good)
+        (home / "c" / lost).unlink()
+        wrong = run(*command, where=home)
+        assert wrong.returncode == 3
+        assert f"c: rejected: {lost} is missing" in wrong.stdout
+    shutil.rmtree(home / "c")
+    (home / "evidence.jsonl").write_bytes(good["evidence.jsonl"])
+    assert run(*command, where=home).returncode == 3
+    empty = run(*command, where=home / "appendix")
+    assert empty.returncode == 3
+    assert "manifest.json is missing" in empty.stdout
+
+
 def test_text_that_the_terminal_cannot_show(good: Files, alone: Path, tmp_path: Path) -> None:
     odd = tmp_path / "ünï"
     manifest = good["manifest.json"].replace(b"claim.toml", b"\\ud800\\u001b[")

@@ -10,6 +10,7 @@ from certify.evidence.counting import Counting
 from certify.evidence.obstruction import Obstruction
 from certify.flow import find_outcome, prove
 from certify.graph.graph import Graph
+from certify.interface import render_outcome
 from certify.report.lasting import find_lasting
 from certify.search.ladder import Limits
 
@@ -77,6 +78,34 @@ def test_the_run_is_told_with_the_reason(tmp_path: Path) -> None:
     text = run.render()
     assert text.startswith("n = ")
     assert str(run.values[-1]) in text
+
+
+def test_what_is_said_of_the_others_is_true_of_them(tmp_path: Path) -> None:
+    """The vertices that are removed are the same, and the pieces that are left are not."""
+    outcomes = {o.name: o for o in prove(write(tmp_path), limits=Limits(20)).outcomes}
+    runs = list(find_lasting(o.settled for o in outcomes.values()))
+    seen = set()
+    for run in runs:
+        first = outcomes[f"n={run.values[0]}"]
+        text = " ".join(render_outcome(first, run).split())
+        if "is disconnected" in text:
+            same = f"The reason is of the same kind for {run.render()}."
+        elif first.record.kind == "obstruction":
+            same = f"The same vertices give the reason for {run.render()}."
+        elif "weight" in text.partition("This was read from")[0]:
+            same = f"The same weights give the reason for {run.render()}."
+        else:
+            same = f"This was read from weights, which are the same for {run.render()}."
+        assert same in text
+        assert f"is about n = {run.values[0]}, and may be different for the others." in text
+        seen.add(first.record.kind)
+        pieces = [
+            render_outcome(outcomes[f"n={value}"]).partition("left: ")[2].partition(".")[0]
+            for value in run.values
+        ]
+        if "pieces are left" in text and len(set(pieces)) > 1:
+            seen.add("pieces differ")
+    assert {"obstruction", "pieces differ"} <= seen
 
 
 def test_a_list_has_no_lasting_reasons(tmp_path: Path) -> None:

@@ -9,6 +9,7 @@ import { buildLayers, withN } from "./strip.js";
 const MOST_STATES = 2000000;
 const MOST_FRONTIER = 253;
 const MOST_STEPS = 10000;
+const MOST_BITS = 2 ** 31;
 
 // All sweeps run in the graph of n(1), which has p layers more than that of n(0). There T(i) stands
 // twice: "low", when 3Z + p layers are not swept, and "high", when 3Z are not. A step takes
@@ -132,6 +133,7 @@ function sweepClass(claim, strip, values, n) {
     }
     seen.set(digest, sizes.length);
     sizes.push(states.length);
+    need(all.length * sizes.length <= MOST_BITS, "the sets of states and their states are too many");
     states = sweep.next(states);
   }
   const preperiod = seen.get(digestOf(states));

@@ -67,8 +67,11 @@ function checkRecipe(recipe, claim, strip, values) {
   }
 }
 
+const MOST_RECIPES = 20;
+
 function checkRecipes(recipes, claim, strip, values) {
-  for (const recipe of listOf(recipes, "recipes")) checkRecipe(recipe, claim, strip, values);
+  need(listOf(recipes, "recipes").length <= MOST_RECIPES, "more than 20 recipes");
+  for (const recipe of recipes) checkRecipe(recipe, claim, strip, values);
 }
 
 export { checkRecipes };

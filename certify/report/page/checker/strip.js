@@ -50,7 +50,8 @@ function readBounds(claim, values) {
       bounds.set(names[i], [low.low, high.low]);
     }
   });
-  need(reader.conditions.length === 0 && reader.moduli.length === 0, "no strip: the bounds are not L and n + c");
+  const asked = reader.conditions.some(({ A, B, N }) => A !== 0 || B !== 0 || N !== 0);
+  need(!asked && modulusOf(reader.moduli) === 1, "no strip: the bounds ask for more of n than to be added");
   return { long: names[place], place, bounds, L, c };
 }
 
