@@ -8,7 +8,7 @@ from .layers import MOST_STATES, Plan, Renaming, sweep_origins, sweep_steps
 from .strict import Rejected, need_integer, need_keys, need_list
 from .strip import Strip
 
-MOST_SETS = 10_000
+MOST_SETS, MOST_BITS = 10_000, 1 << 31
 
 
 @dataclass(frozen=True)
@@ -86,8 +86,8 @@ class Sets:
         bit = 1 << i
         for state in self.current:
             self._origins[state] = self._origins.get(state, 0) | bit
-        if len(self._origins) > MOST_STATES:
-            raise Rejected(f"all T(i) together have more than {MOST_STATES} states")
+        if len(self._origins) > min(MOST_STATES, MOST_BITS // (i + 1)):
+            raise Rejected(f"T(0) to T({i}) together have {len(self._origins)} states: too many")
         self.current = {self._back.apply(s) for s in sweep_steps(self._piece, self.current)}
 
     def is_back_at(self, i: int, size: int) -> bool:

@@ -148,9 +148,10 @@ class Reader:
             self._mark(parts[0], one(0))
             return unite([parts[0], scale(parts[0], -1)])
         if name in ("min", "max"):
-            for place, part in enumerate(parts):
-                for other in parts[:place]:
-                    self._mark(part, other)
+            earlier: Pieces = {}
+            for part in parts:
+                self._mark(part, earlier)
+                earlier = unite([earlier, part], most=None)
             return unite(parts)
         if name in FUNCTIONS and all(map(is_small, parts)):
             return {SMALL: (0, max(size(part[SMALL]) for part in parts))}
@@ -159,16 +160,17 @@ class Reader:
     def _compare(self, node: ast.Compare) -> None:
         sides = [self._side(part) for part in (node.left, *node.comparators)]
         for left, right in pairwise(sides):
-            for e in left:
-                for f in right:
-                    self._mark(e, f)
+            self._mark(left, right)
 
-    def _side(self, node: ast.expr) -> list[Pieces]:
-        """Return the members of a display, a single integer, or nothing for a truth value."""
+    def _side(self, node: ast.expr) -> Pieces:
+        """Return the pieces of an integer, of all members of a display, none of a truth value.
+
+        That members are not told apart changes no number: the largest difference of two
+        hulls is one of two members. And it keeps a comparison of long displays quick.
+        """
         if isinstance(node, ast.Set | ast.Tuple | ast.List):
-            return [self._integer(part) for part in node.elts]
-        pieces = self._visit(node)
-        return [] if pieces is None else [pieces]
+            return unite([self._integer(part) for part in node.elts], most=None)
+        return self._visit(node) or {}
 
     def _mark(self, e: Pieces, f: Pieces) -> None:
         """Note that the sign of e - f matters."""

@@ -20,7 +20,7 @@ from .recipes import check_recipe
 from .strict import Rejected, need_integer, need_keys, need_list, need_object, need_text
 from .strip import GROWS, Strip, Texts, find_strip
 
-MOST_COMPARED = 1_000_000
+MOST_COMPARED, MOST_RECIPES = 1_000_000, 20
 
 CheckSmall = Callable[[Question, str, str, dict[str, Any]], None]
 
@@ -94,6 +94,8 @@ def check_endless(family: Family, body: dict[str, Any], check_small: CheckSmall)
             f"there are {len(small)} small instances and {len(classes)} classes, "
             f"not {strip.first - family.lo} and {strip.modulus}"
         )
+    if len(recipes) > MOST_RECIPES:
+        raise Rejected(f"there are more than {MOST_RECIPES} recipes")
     shown = [_check_small(family, n, told, check_small) for n, told in enumerate(small, family.lo)]
     found = [
         check_class(strip, _plan(family, strip, n), told, f"class {n}")

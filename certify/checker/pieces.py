@@ -31,9 +31,12 @@ def is_small(pieces: Pieces) -> bool:
     return pieces.keys() == {SMALL}
 
 
-def unite(parts: Iterable[Pieces]) -> Pieces:
-    """Return the pieces of all parts, those of one form made one."""
-    return _gather(item for part in parts for item in part.items())
+def unite(parts: Iterable[Pieces], *, most: int | None = MOST_PIECES) -> Pieces:
+    """Return the pieces of all parts, those of one form made one.
+
+    most: how many there may be; None where the parts are not one part of a rule.
+    """
+    return _gather((item for part in parts for item in part.items()), most)
 
 
 def add(e: Pieces, f: Pieces) -> Pieces:
@@ -60,13 +63,13 @@ def scale(e: Pieces, k: int) -> Pieces:
     )
 
 
-def _gather(items: Iterable[tuple[Form, Interval]]) -> Pieces:
+def _gather(items: Iterable[tuple[Form, Interval]], most: int | None = MOST_PIECES) -> Pieces:
     pieces: Pieces = {}
     for form, (low, high) in items:
         known = pieces.get(form, (low, high))
         pieces[form] = min(low, known[0]), max(high, known[1])
-        if len(pieces) > MOST_PIECES:
-            raise BadClaim(f"no strip: a part of the rule has more than {MOST_PIECES} pieces")
+        if most is not None and len(pieces) > most:
+            raise BadClaim(f"no strip: a part of the rule has more than {most} pieces")
     return pieces
 
 

@@ -4,7 +4,8 @@ Let n grow, let L, ..., n + c be the long coordinate's range, and let the *layer
 vertices with x = L + s; its distance from the end is t = n + c - x. conditions.py shows that
 whether a vertex is kept and whether two are joined are functions of the other coordinates, of
 residues modulo p, and of the signs of A*x + B*y + N*n + k for certain (A, B, N) and abs(k) <= z.
-Let d = x - y.
+The bounds of the long coordinate ask for no residue and no such sign, so that they are L and
+n + c, or an error, for every n alike. Let d = x - y.
 
 Claim 1. For n >= FIRST these signs follow from the *capped numbers*: for both vertices s and t,
 and abs(d) and n - abs(d), where Z stands for Z or more, and the sign of d. Form by form, up to
@@ -129,12 +130,16 @@ def _find_long(texts: Texts, fixed: Mapping[str, int], growing: str) -> tuple[in
             f"no strip: {len(naming)} coordinates, and not one, have {growing} in a bound"
         )
     bounds = str(texts.ranges[naming[0]]).split("..")
-    pieces = [Reader(fixed, {growing: {GROWS: (0, 0)}}).read(bound) for bound in bounds]
+    reader = Reader(fixed, {growing: {GROWS: (0, 0)}})
+    pieces = [reader.read(bound) for bound in bounds]
     found = []
     for form, part in zip((SMALL, GROWS), pieces, strict=True):
         if part is None or part.keys() != {form} or part[form][0] != part[form][1]:
             raise BadClaim(f"no strip: the bounds are not a constant and {growing} plus a constant")
         found.append(part[form][0])
+    # Otherwise the bounds could be an error for some n that no sample shows.
+    if reader.modulus > 1 or reader.conditions.keys() - {SMALL}:
+        raise BadClaim(f"no strip: the bounds ask for more of {growing} than to be added")
     return naming[0], found[0], found[1]
 
 

@@ -159,26 +159,34 @@ def _find_long(
     if len(found) > 1:
         raise _fault(claim, rule.ranges[found[1]].where, "two coordinates grow")
     range_ = rule.ranges[found[0]]
-    low = _bound(claim, range_, range_.low, names, row)
-    high = _bound(claim, range_, range_.high, names, row)
+    reading = Reading()
+    low = _bound(claim, range_, range_.low, (names, reading), row)
+    high = _bound(claim, range_, range_.high, (names, reading), row)
     if low.slope != (0, 0, 0) or high.slope != (0, 0, 1):
         raise _fault(
             claim,
             range_.where,
             f"the long coordinate has to run from a constant to {growing} plus a constant",
         )
+    if reading.conditions or lcm(*reading.moduli) > 1:
+        # Otherwise the bounds could be an error for some n that is never looked at.
+        raise _fault(claim, range_.where, f"the bounds ask for more of {growing} than to be added")
     return found[0], low.low, high.low
 
 
 def _bound(
-    claim: Claim, range_: Range, bound: Expression | int, names: Mapping[str, Forms], row: Row
+    claim: Claim,
+    range_: Range,
+    bound: Expression | int,
+    context: tuple[Mapping[str, Forms], Reading],
+    row: Row,
 ) -> Form:
     """Return a bound of the long coordinate as a form with one constant."""
     if isinstance(bound, int):
         return constant(bound)[0]
     if not bound.mentions(str(claim.growing)):
         return constant(number(bound, row))[0]
-    forms = read_linear(bound, names, Reading(), _refusal(claim))
+    forms = read_linear(bound, *context, _refusal(claim))
     if len(forms) != 1 or forms[0].low != forms[0].high:
         raise _fault(claim, range_.where, "the bound is not one number")
     return forms[0]

@@ -32,6 +32,8 @@ SMALL_SHARE = 0.25
 RECIPE_SHARE = 0.5
 MOST_SETS = 10_000
 """How many sets of states are looked at for a repetition."""
+MOST_BITS = 1 << 31
+"""How large the number of sets times the number of different states in them may be."""
 
 
 def find_endless(strip: Strip, limits: Limits) -> Endless | None:
@@ -86,7 +88,9 @@ def sweep_class(strip: Strip, n: int, allowance: Allowance) -> Settled | None:
         seen[digest] = len(sizes)
         union, marks = _unite(strand, union, marks, layer, len(sizes))
         sizes.append(layer.size)
-        if union.size > MOST_STATES or union.values.nbytes + marks.nbytes > allowance.memory // 4:
+        if union.size > min(MOST_STATES, MOST_BITS // len(sizes)):
+            return None
+        if union.values.nbytes + marks.nbytes > allowance.memory // 4:
             return None
         layer = strand.advance(layer)
     if layer is None or union is None or len(sizes) == MOST_SETS:

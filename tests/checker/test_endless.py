@@ -304,6 +304,34 @@ def test_claims_that_are_not_endless_claims(more: str, instances: str, reason: s
         Claim(text.encode())
 
 
+@pytest.mark.parametrize(
+    "high",
+    [
+        "n + 0*(1 // (0 if n > 60 else 1))",
+        "n + 0*(1 // (n % 3))",
+        "n if n > 0 else n",
+        "n + 0*min(n, 5)",
+    ],
+)
+def test_bounds_that_could_be_an_error_for_large_n_only(high: str) -> None:
+    """The first two divide by zero for some n of which no graph is built."""
+    with pytest.raises(BadClaim, match="no strip: the bounds ask for more"):
+        strip_of(Rule(f'"1..{high}"', "abs(a - b) in {1, 2}", instances='n = "13.."').family())
+
+
+@pytest.mark.parametrize("high", ["n + 0*max(0, (n - 60) % 1)", "2*n - n", "n if 1 < 2 else n"])
+def test_bounds_that_are_the_same_for_every_n(high: str) -> None:
+    assert strip_of(Rule(f'"1..{high}"', "abs(a - b) in {1, 2}").family()).shift == 0
+
+
+def test_long_displays_are_read_as_their_members_are() -> None:
+    """Many comparisons at once, and the zone that the farthest two members need."""
+    left = ", ".join(f"a - b + {k % 7}" for k in range(40))
+    right = ", ".join(f"n % 2 - {k % 9}" for k in range(40))
+    rule = Rule('"1..n"', f"{{{left}}} == {{{right}}} or abs(a - b) == 1")
+    assert strip_of(rule.family()).zone == 6 + 8 + 1
+
+
 def test_counts_are_no_answers_to_an_endless_claim() -> None:
     with pytest.raises(BadClaim, match="no counts"):
         with_answers(HOPS, "exists = 3").claim()
@@ -351,6 +379,23 @@ def test_too_many_states_are_rejected(monkeypatch: pytest.MonkeyPatch) -> None:
     monkeypatch.setattr("certify.checker.layers.MOST_STATES", 20)
     with pytest.raises(Rejected, match="more than 20 states"):
         check_endless(family, body, check_small)
+
+
+def test_too_many_states_in_too_many_sets_are_rejected(monkeypatch: pytest.MonkeyPatch) -> None:
+    body = record_of(HOPS)["evidence"]
+    monkeypatch.setattr("certify.checker.classes.MOST_BITS", 10)
+    with pytest.raises(Rejected, match="too many"):
+        check_endless(HOPS.family(), body, check_small)
+
+
+def test_too_many_recipes_are_rejected() -> None:
+    order = [*range(0, 20, 2), *reversed(range(1, 20, 2))]
+    rule = hops(1, 2, structure=CYCLE, lo=3)
+    record = copy.deepcopy(record_of(rule))
+    recipe = {"cut": 9, "n": 20, "order": order, "step": 2}
+    for count, accepted in [(20, True), (21, False)]:
+        record["evidence"]["recipes"] = [recipe] * count
+        assert check(rule, record).accepted is accepted
 
 
 def test_small_instances_have_no_files() -> None:
