@@ -6,6 +6,10 @@ graph becomes one of the *contraction*, the block with all the rest drawn togeth
 into one vertex; if that has none, the graph has none. The contraction is small, and
 a sweep along an order that begins with the block dies at its end, however wide
 the rest of the graph is.
+
+A block may also have a passage, but always through one certain edge, as the fragment of
+Tutte (J. London Math. Soc. 21 (1946) 98-101). Three blocks whose certain edges
+meet in one vertex leave no cycle, as in his graph; then the sweep begins with the three.
 """
 
 from __future__ import annotations
@@ -26,10 +30,14 @@ _SEED = 20
 _MOST_EDGES = 2_000
 """Triples of edges are looked up pair by pair; graphs with more are left to others."""
 _MOST_BLOCKS = 40
+_TOO_MANY = 3
+"""A cycle has two edges at a vertex."""
 
 
 def find_block(question: Question, *, budget: Budget, memory: int = 1 << 26) -> Sweep | None:
     """Find a block behind two or three edges that no Hamiltonian cycle passes.
+
+    Or three blocks that every one leaves towards the same vertex.
 
     Returns a sweep of the whole question whose order begins with the block. None:
     there is no such block among the smallest `_MOST_BLOCKS`, or a limit was reached.
@@ -37,19 +45,53 @@ def find_block(question: Question, *, budget: Budget, memory: int = 1 << 26) -> 
     """
     if question.n < 3 or question.absent or question.m > _MOST_EDGES:
         return None
+    certain: dict[int, list[tuple[int, ...]]] = {}
     for block in _find_small_sides(question):
         if budget.spent:
             return None
-        contraction = _contract(question, block)
-        found = find_sweep(contraction.question, budget=budget, memory=memory)
-        if not isinstance(found, Sweep):
+        order, forced = _pass_through(question, block, budget, memory)
+        if order is None:
             continue
-        start = [contraction.vertices[v] for v in found.order if v < len(block)]
-        rest = sorted(set(range(question.n)) - set(block))
-        whole = sweep_along(question, (*start, *rest), budget=budget, memory=memory)
-        if isinstance(whole, Sweep):
-            return whole
+        begins = [order] if not forced else []
+        for u, v in forced:
+            outer = v if u in order else u
+            certain.setdefault(outer, []).append(order)
+            if len(certain[outer]) == _TOO_MANY:
+                begins.append((*(w for part in certain[outer] for w in part), outer))
+        for begin in begins:
+            distinct = tuple(dict.fromkeys(begin))
+            rest = sorted(set(range(question.n)) - set(distinct))
+            whole = sweep_along(question, (*distinct, *rest), budget=budget, memory=memory)
+            if isinstance(whole, Sweep):
+                return whole
     return None
+
+
+def _pass_through(
+    question: Question, block: tuple[int, ...], budget: Budget, memory: int
+) -> tuple[tuple[int, ...] | None, tuple[Edge, ...]]:
+    """Return an order of the block, and the edges of its cut that every passage uses.
+
+    No edges: there is no passage at all. No order: nothing is known that helps.
+    """
+    contraction = _contract(question, block)
+    found = find_sweep(contraction.question, budget=budget, memory=memory)
+    outside = contraction.question.n - 1
+    if isinstance(found, Sweep):
+        return tuple(contraction.vertices[v] for v in found.order if v != outside), ()
+    inside = set(block)
+    for u, v in question.edges:
+        if (u in inside) == (v in inside):
+            continue
+        end = block.index(u if u in inside else v)
+        without = contraction.question.assume((), [(end, outside)])
+        if min(map(len, without.neighbours)) < 2:
+            continue  # of two edges both are used, as the forced moves know
+        closed = find_sweep(without, budget=budget, memory=memory)
+        if isinstance(closed, Sweep):
+            order = tuple(contraction.vertices[w] for w in closed.order if w != outside)
+            return order, ((u, v),)
+    return None, ()
 
 
 @dataclass(frozen=True)

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import random
 
+import igraph
 import networkx
 import pytest
 from hypothesis import given
@@ -89,3 +90,11 @@ def test_what_is_found_is_true(seed: int) -> None:
     question = Question(n=n, edges=edges, required=required)
     if find_block(question, budget=PLENTY) is not None:
         assert not has_cycle(question)
+
+
+def test_three_blocks_with_one_exit_each_towards_one_vertex_are_found() -> None:
+    """Tutte's graph is three such blocks (J. London Math. Soc. 21 (1946) 98-101)."""
+    graph = igraph.Graph.Famous("Tutte")
+    question = build(graph.vcount(), graph.get_edgelist())
+    found = find_block(question, budget=PLENTY)
+    assert isinstance(found, Sweep)
