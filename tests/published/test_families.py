@@ -134,7 +134,7 @@ k = "3..13"
 exists = true
 """,
     # Steps of s and t round a ring: every connected Cayley graph of an abelian group, on three
-    # vertices or more, has a cycle. Chen and Quimpo, Lecture Notes in Mathematics 884 (1981)
+    # vertices or more, has a cycle. Chen and Quimpo, LNM 884 (1981)
     # 23-34 (from memory).
     "circulant graphs": """
 vertices = "0..n - 1"
