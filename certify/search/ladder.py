@@ -8,9 +8,10 @@ they fail. Each share is of what is left of the budget.
     obstruction   obstruction           10 %   a look at the graph
     witness       witness               10 %   a bounded number of steps
     counting      counting              20 %   one linear program
-    few cases     cases                 20 %   trees a reader can follow
+    few cases     cases                 20 %   trees a reader can follow, of graphs one can draw
     block         sweep                 20 %   a part behind three edges
     thin sweep    sweep, witness        20 %   long thin graphs, at once
+    few cases     cases                 20 %   the same in larger graphs, where it seldom succeeds
     clauses       clauses, witness      60 %   the strongest on small dense graphs
     wide sweep    sweep, witness        60 %   what needs memory
     many cases    cases                100 %   the last resort
@@ -38,6 +39,7 @@ from certify.search.witness import find_witness, write_witness
 KINDS = ("witness", "obstruction", "counting", "cases", "sweep", "clauses")
 
 READABLE_LEAVES = 12
+READABLE_VERTICES = 48
 READABLE_EFFORT = 500_000
 MOST_LEAVES = 5_000
 THIN_MEMORY = 1 << 26
@@ -67,6 +69,14 @@ def _witness(question: Question, search: Search) -> Found:
 
 def _counting(question: Question, search: Search) -> Found:
     return find_counting(question, budget=search.budget, shortest=search.shortest)
+
+
+def _few_cases_small(question: Question, search: Search) -> Found:
+    return _few_cases(question, search) if question.n <= READABLE_VERTICES else None
+
+
+def _few_cases_large(question: Question, search: Search) -> Found:
+    return _few_cases(question, search) if question.n > READABLE_VERTICES else None
 
 
 def _few_cases(question: Question, search: Search) -> Found:
@@ -114,9 +124,10 @@ LADDER = (
     Rung(frozenset({"obstruction"}), _obstruction, 0.1),
     Rung(frozenset({"witness"}), _witness, 0.1),
     Rung(frozenset({"counting"}), _counting, 0.2),
-    Rung(frozenset({"cases"}), _few_cases, 0.2),
+    Rung(frozenset({"cases"}), _few_cases_small, 0.2),
     Rung(frozenset({"sweep"}), _block, 0.2),
     Rung(frozenset({"sweep", "witness"}), _thin_sweep, 0.2),
+    Rung(frozenset({"cases"}), _few_cases_large, 0.2),
     Rung(frozenset({"clauses", "witness"}), _clauses, 0.6),
     Rung(frozenset({"sweep", "witness"}), _wide_sweep, 0.6),
     Rung(frozenset({"cases"}), _many_cases, 1.0),
@@ -152,7 +163,7 @@ def settle(question: Question, limits: Limits) -> Evidence | None:
         if not rung.kinds & limits.kinds or budget.spent:
             continue
         if best is not None and rung.kinds & {"sweep", "clauses"}:
-            break
+            continue
         search = Search(budget.share(rung.share), limits.memory, limits.shortest)
         found = rung.find(question, search)
         evidence = write_witness(question, found) if isinstance(found, tuple) else found

@@ -76,6 +76,12 @@ def sweep_along(
         swept.add(v)
         states.append(layer.size)
         writer.write(layer, digest)
+        if layer.size == 0:
+            # Nothing comes of no state: the lines of the remaining steps are empty.
+            remaining = len(order) - len(states)
+            states += [0] * remaining
+            digest.update(b"\n" * remaining)
+            break
     return Sweep(tuple(order), tuple(states), digest.hexdigest())
 
 
