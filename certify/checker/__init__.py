@@ -41,7 +41,8 @@ def check_line(
 
     claim: the bytes of the claim file. line: the bytes of the record. files: the
     bytes of the files that the record names. graph: for a list, the bytes of this
-    one graph in the list's format.
+    one graph in the list's format. That the instance is one of the claim's, and that
+    all of them are there, is for `check_folder` to see.
     """
 
     def read_file(name: str) -> bytes:

@@ -1,8 +1,9 @@
 """The ladder: which finder runs when, and with which share of the budget.
 
 The rungs are tried from the top, and the first that settles the question ends the
-search: kinds further up read shorter than those further down, and cost less when
-they fail. Each share is of what is left of the budget.
+search: those further up give shorter reasons, or cost less when they fail. (A tree of
+cases reads better than a sweep, but in a graph too large to draw it is seldom found, and
+the attempt is dear: there it comes later.) Each share is of what is left of the budget.
 
     rung          kinds it gives       share   because
     obstruction   obstruction           10 %   a look at the graph
