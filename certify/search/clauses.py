@@ -82,13 +82,9 @@ def find_clauses(
     Cost: exponential at worst. Trimming takes about as long as the solver took for
     its proof, polishing a short proof a second; both may overrun the budget.
     """
-    if question.absent or question.n < 3 or min(map(len, question.neighbours)) < 2:
+    facts = opening_facts(question, mirrors)
+    if facts is None:
         return None
-    identity = tuple(range(question.n))
-    images = [p for p in dict.fromkeys(map(tuple, mirrors)) if p != identity]
-    facts: list[Fact] = [DegreeFact(v) for v in range(question.n)]
-    facts.extend(RequiredFact(edge) for edge in sorted(question.required))
-    facts.extend(MirrorFact(_MIRROR_PLACES, p) for p in images[:_MOST_MIRRORS])
     found = _find_contradiction(question, facts, budget)
     if not isinstance(found, list):
         return found
@@ -100,9 +96,39 @@ def find_clauses(
     return None if too_long else evidence
 
 
+def opening_facts(question: Question, mirrors: Sequence[tuple[int, ...]]) -> list[Fact] | None:
+    """Return the facts that the search begins with; the cuts are found later.
+
+    None: there is nothing to say in clauses (see `find_clauses`).
+    """
+    if question.absent or question.n < 3 or min(map(len, question.neighbours)) < 2:
+        return None
+    identity = tuple(range(question.n))
+    images = [p for p in dict.fromkeys(map(tuple, mirrors)) if p != identity]
+    facts: list[Fact] = [DegreeFact(v) for v in range(question.n)]
+    facts.extend(RequiredFact(edge) for edge in sorted(question.required))
+    facts.extend(MirrorFact(_MIRROR_PLACES, p) for p in images[:_MOST_MIRRORS])
+    return facts
+
+
+def refute_part(
+    question: Question, facts: Sequence[Fact], units: Clause, budget: Budget
+) -> Refutation | tuple[int, ...] | None:
+    """Refute the facts together with some literals, or find a Hamiltonian cycle.
+
+    In the refutation the literals are unit clauses that follow the clauses of the facts.
+    None: the budget is spent, or a text is too long. Cost: as `find_clauses`.
+    """
+    found = _find_contradiction(question, facts, budget, units)
+    return _refute(question, found, _SEARCHING, budget, units) if isinstance(found, list) else found
+
+
 @dataclass(frozen=True)
-class _Refutation:
-    """Facts in the order of the file, and a proof from all their clauses."""
+class Refutation:
+    """Facts in the order of the file, and a proof from all their clauses.
+
+    clauses: those of the facts; of a part of a question also its unit clauses, at the end.
+    """
 
     facts: list[Fact]
     clauses: list[Clause]
@@ -180,17 +206,18 @@ class _Solver:
 
 
 def _find_contradiction(
-    question: Question, facts: Sequence[Fact], budget: Budget
+    question: Question, facts: Sequence[Fact], budget: Budget, units: Clause = ()
 ) -> list[Fact] | tuple[int, ...] | None:
     """Add the cuts that solutions miss until there is no solution, or one cycle only.
 
-    Returns the facts that contradict each other (a list), or the Hamiltonian cycle
-    (a tuple). None: the budget is spent.
+    units: literals that hold besides. Returns the facts that contradict each other (a
+    list), or the Hamiltonian cycle (a tuple). None: the budget is spent.
     """
     builder = ClauseBuilder(question)
     known: list[Fact] = []
     missed = facts
     with _Solver(_SEARCHING) as solver:
+        solver.add((unit,) for unit in units)
         while True:
             for fact in missed:
                 clauses = builder.build(fact)
@@ -231,18 +258,24 @@ def _walk_cycles(question: Question, model: Sequence[int]) -> list[tuple[int, ..
 
 
 def _refute(
-    question: Question, facts: Iterable[Fact], options: dict[str, int], effort: Budget | int
-) -> _Refutation | None:
+    question: Question,
+    facts: Iterable[Fact],
+    options: dict[str, int],
+    effort: Budget | int,
+    units: Clause = (),
+) -> Refutation | None:
     """Refute facts that contradict each other, and keep those that the proof uses.
 
-    None: the effort is spent, or the solver's proof is not of the wanted form.
+    units: literals that hold besides. None: the effort is spent, or the solver's proof is
+    not of the wanted form.
     """
     in_order = sort_facts(facts)
     builder = ClauseBuilder(question)
     clauses = [clause for fact in in_order for clause in builder.build(fact)]
+    clauses.extend((unit,) for unit in units)
     if () in clauses:
         at_once = Proof(len(clauses), (((), (clauses.index(()),)),))
-        return _keep_facts(question, in_order, at_once)
+        return keep_facts(question, in_order, at_once, units)
     with tempfile.TemporaryFile() as log:
         with _Solver(options, log) as solver:
             solver.add(clauses)
@@ -258,11 +291,16 @@ def _refute(
         return None
     if len(proof.steps) <= _JOINED_STEPS:
         proof = join_steps(proof, clauses)
-    return _keep_facts(question, in_order, proof)
+    return keep_facts(question, in_order, proof, units)
 
 
-def _keep_facts(question: Question, facts: Sequence[Fact], proof: Proof) -> _Refutation:
-    """Keep the facts of which the proof uses a clause, with all their clauses."""
+def keep_facts(
+    question: Question, facts: Sequence[Fact], proof: Proof, units: Clause = ()
+) -> Refutation:
+    """Keep the facts of which the proof uses a clause, with all their clauses.
+
+    facts: in the order of the file. units: literals whose clauses come after those of the facts.
+    """
     used = proof.used_clauses
     old, new = ClauseBuilder(question), ClauseBuilder(question)
     kept: list[Fact] = []
@@ -283,10 +321,12 @@ def _keep_facts(question: Question, facts: Sequence[Fact], proof: Proof) -> _Ref
             places.update((first + i, len(clauses) + i) for i in in_use)
             clauses.extend(new.build(fact))
         first += size
-    return _Refutation(kept, clauses, proof.renumber(len(clauses), places, variables))
+    places.update((first + i, len(clauses) + i) for i in range(len(units)))
+    clauses.extend((unit,) for unit in units)
+    return Refutation(kept, clauses, proof.renumber(len(clauses), places, variables))
 
 
-def _polish(question: Question, best: _Refutation) -> _Refutation:
+def _polish(question: Question, best: Refutation) -> Refutation:
     """Make a small refutation shorter: leave out facts, then choose among several proofs.
 
     Large ones are returned as they are. Bounded by conflicts, not by the clock,

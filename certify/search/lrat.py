@@ -79,8 +79,7 @@ def trim_proof(text: bytes, clauses: Sequence[Clause]) -> Proof | None:
     Cost: linear in the text; hints of steps that are not used are not read.
     """
     used = _read_used(text, len(clauses))
-    replayed = None if used is None else _replay(used, clauses)
-    return None if replayed is None else _keep_used(len(clauses), replayed)
+    return None if used is None else tidy_steps(used, clauses)
 
 
 def join_steps(proof: Proof, clauses: Sequence[Clause]) -> Proof:
@@ -98,6 +97,19 @@ def join_steps(proof: Proof, clauses: Sequence[Clause]) -> Proof:
         if len(joined.steps) == len(proof.steps):
             return proof
         proof = joined
+
+
+def tidy_steps(
+    steps: Iterable[tuple[int, Step]], clauses: Sequence[Clause], goal: Clause = ()
+) -> Proof | None:
+    """Replay numbered steps up to one whose literals are all in the goal, and keep what it needs.
+
+    steps: each with its number, by which the hints of later ones name it; literals and
+    hints that play no part are left out. clauses: those the proof starts from.
+    None: no step leads to the goal, or hints lead to no contradiction.
+    """
+    replayed = _replay(steps, clauses, frozenset(goal))
+    return None if replayed is None else _keep_used(len(clauses), replayed)
 
 
 def write_lrat(proof: Proof) -> bytes:
@@ -151,7 +163,9 @@ def _read_used(text: bytes, clauses: int) -> list[tuple[int, Step]] | None:
     return kept[::-1]
 
 
-def _replay(used: Sequence[tuple[int, Step]], clauses: Sequence[Clause]) -> list[Step] | None:
+def _replay(
+    used: Iterable[tuple[int, Step]], clauses: Sequence[Clause], goal: frozenset[int]
+) -> list[Step] | None:
     """Replay the steps; leave out what plays no part, and steps that say nothing new."""
     sets = [frozenset(clause) for clause in clauses]
     known = {literals: i for i, literals in reversed(list(enumerate(sets)))}
@@ -162,12 +176,12 @@ def _replay(used: Sequence[tuple[int, Step]], clauses: Sequence[Clause]) -> list
         if step is None:
             return None
         left = frozenset(step[0])
+        if left <= goal:
+            return [*steps, step]
         place[number] = known.setdefault(left, len(sets))
         if place[number] == len(sets):
             sets.append(left)
             steps.append(step)
-            if not left:
-                return steps
     return None
 
 
@@ -257,5 +271,5 @@ def _join_once(proof: Proof, clauses: Sequence[Clause]) -> Proof:
                 steps[j] = literals, hints
                 sets[first + j] = frozenset(literals)
     left = [(first + i, step) for i, step in enumerate(steps) if step[1]]
-    replayed = _replay(left, clauses)
-    return proof if replayed is None else _keep_used(first, replayed)
+    joined = tidy_steps(left, clauses)
+    return proof if joined is None else joined
