@@ -1,11 +1,12 @@
 (** * The statement
 
-    This page is all that has to be read and believed, beside Coq itself: what a graph
-    is, what a Hamiltonian path or cycle of it is, and the predicates that a rule may
-    use. A theorem made from a certificate says [~ exists h, ham_path Q h] (or
-    [ham_cycle]) for a query [Q] that is written out beside it. *)
+    This page says what a Hamiltonian path or cycle of a graph is. Beside Coq itself it
+    is what has to be read and believed, together with the meaning of the words that a
+    rule uses (Rules.v and the lemmas about it in RulesSpec.v). A theorem made from a
+    certificate says [~ exists h, ham_path Q h] (or [ham_cycle]) of a query [Q] that is
+    written out beside it, or, for a whole table, for which parameters there is one. *)
 
-From Coq Require Import Bool List Permutation Arith.
+From Coq Require Import List Permutation.
 Import ListNotations.
 
 Section Statement.
@@ -13,9 +14,10 @@ Section Statement.
 (** Vertices are whole numbers, or tuples of whole numbers. *)
 Variable V : Type.
 
-(** A graph: its vertices, each once, and which two of them are joined. A query asks
-    for a path or cycle through all its vertices; a path may be asked to have given
-    ends (one or two), and both may be asked to use some edges, and not to use others. *)
+(** A query shows a graph: its vertices, each once, and which two of them are joined. It
+    asks for a path or cycle through all the vertices; a path may be asked to have
+    given ends (one or two), and both may be asked to use some edges, and not to use
+    others. *)
 Record query := {
   vertices : list V;
   adjacent : V -> V -> bool;
@@ -26,7 +28,7 @@ Record query := {
 
 Variable Q : query.
 
-(** Two vertices that a path may visit one after the other. *)
+(** [edge u v]: a path may go on from [u] to [v]. *)
 Definition edge (u v : V) : Prop :=
   adjacent Q u v = true /\ ~ In (u, v) (forbidden Q) /\ ~ In (v, u) (forbidden Q).
 
@@ -44,18 +46,22 @@ Definition cycle_steps (h : list V) : list (V * V) :=
   | [] => []
   end.
 
-(** What path and cycle have in common: every vertex once, every step along an edge,
-    every required edge among the steps, one way or the other. *)
+(** What path and cycle have in common: they visit each vertex once, every step is along
+    an edge, and every required edge is among the steps, one way or the other. *)
 Definition visits (h : list V) (steps : list (V * V)) : Prop :=
   Permutation h (vertices Q) /\
   (forall u v, In (u, v) steps -> edge u v) /\
   (forall u v, In (u, v) (required Q) -> In (u, v) steps \/ In (v, u) steps).
 
+Definition starts (h : list V) (s : V) : Prop := exists rest, h = s :: rest.
+Definition stops (h : list V) (t : V) : Prop := exists rest, h = rest ++ [t].
+
+(** The path has the ends asked for; which of them comes first does not matter. *)
 Definition has_ends (h : list V) : Prop :=
   match ends Q with
   | [] => True
-  | [s] => exists t, h = s :: t \/ h = t ++ [s]
-  | [s; t] => exists m, h = s :: m ++ [t] \/ h = t :: m ++ [s] \/ (h = [s] /\ s = t)
+  | [s] => starts h s \/ stops h s
+  | [s; t] => (starts h s /\ stops h t) \/ (starts h t /\ stops h s)
   | _ => False
   end.
 
@@ -76,6 +82,8 @@ Arguments edge {V}.
 Arguments path_steps {V}.
 Arguments cycle_steps {V}.
 Arguments visits {V}.
+Arguments starts {V}.
+Arguments stops {V}.
 Arguments has_ends {V}.
 Arguments ham_path {V}.
 Arguments ham_cycle {V}.
