@@ -3,7 +3,8 @@
     CertifyError                    exit code 1 is left to crashes
     |-- InputError          2       bad input or bad usage
     |   |-- ClaimError              a claim file, with file, line and place
-    |   `-- GraphFileError          a file of graphs, with file and line
+    |   |-- GraphFileError          a file of graphs, with file and line
+    |   `-- DiskError               a file or folder that cannot be read or written
     |-- ContradictionError  3       a claim contradicted, or evidence rejected
     `-- OpenError           4       something was left open
 
@@ -33,6 +34,10 @@ class ClaimError(InputError):
 
 class GraphFileError(InputError):
     """A file of graphs that cannot be read."""
+
+
+class DiskError(InputError):
+    """A file or folder that cannot be read or written; what was stored before is still there."""
 
 
 class ContradictionError(CertifyError):

@@ -14,7 +14,7 @@ import sys
 from pathlib import Path
 from typing import TextIO
 
-from .files import EVIDENCE, MANIFEST
+from .files import KEPT
 from .folder import FolderCheck, complain, describe
 
 
@@ -36,7 +36,7 @@ def main(arguments: list[str]) -> int:
 def find_folders(folder: Path) -> list[Path]:
     """Return the folder itself, or, if it holds no evidence, those right below that do.
 
-    One of the two files is enough: a folder that has lost the other has to be
+    One of the files is enough: a folder that has lost the others has to be
     rejected, not passed over. So has a folder in which there is nothing at all. Names with
     a point in front are those of unfinished work.
     """
@@ -49,7 +49,7 @@ def find_folders(folder: Path) -> list[Path]:
 
 
 def _holds_evidence(folder: Path) -> bool:
-    return any(os.path.lexists(folder / name) for name in (MANIFEST, EVIDENCE))
+    return any(os.path.lexists(folder / name) for name in KEPT)
 
 
 def check_and_print(check: FolderCheck, *, as_json: bool) -> int:

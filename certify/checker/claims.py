@@ -2,14 +2,15 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator, Mapping
+from collections.abc import Callable, Iterable, Iterator, Mapping
 from typing import Any
 
 from .endless import Family
+from .graph6 import read_lines
 from .graphs import Graph, Question
-from .lists import ENDINGS, read_list
+from .lists import ENDINGS, MOST_GRAPHS, OF_LINES, read_list
 from .named import Demands, Name, read_list_vertex, read_rule_vertex
-from .ranges import MOST_INSTANCES, Table, list_cells, read_range
+from .ranges import Table, list_cells, read_range
 from .rules import MOST_RESULT, TRUTH, Evaluate, compile_rule
 from .strict import BadClaim, Rejected
 from .strip import Texts
@@ -179,16 +180,32 @@ class Claim:
             self.says_text,
         )
 
-    def instances(self, read_file: Callable[[str], bytes]) -> Iterator[tuple[Key, Graph]]:
-        """Yield every instance with its graph, in order."""
+    @property
+    def has_lines(self) -> bool:
+        """Whether there is a list in which every line is a graph."""
+        return self.list_format in OF_LINES
+
+    def instances(
+        self,
+        read_file: Callable[[str], bytes],
+        open_lines: Callable[[str], Iterable[bytes]] | None = None,
+    ) -> Iterator[tuple[Key, Graph]]:
+        """Yield every instance with its graph, in order.
+
+        open_lines: gives the lines of a file one by one, so that a list in which every line is
+        a graph is never in memory.
+        """
         if self.list_name is None:
             for row in self.table.rows():
                 yield self.key(row), self.draw(row)
             return
-        graphs = read_list(read_file(self.list_name), self.list_format)
+        if open_lines is not None and self.has_lines:
+            graphs = read_lines(open_lines(self.list_name))
+        else:
+            graphs = read_list(read_file(self.list_name), self.list_format)
         for position, graph in enumerate(graphs, 1):
-            if position > MOST_INSTANCES:
-                raise BadClaim(f"the list has more than {MOST_INSTANCES} graphs")
+            if position > MOST_GRAPHS:
+                raise BadClaim(f"the list has more than {MOST_GRAPHS} graphs")
             yield position, graph
 
     def draw(self, row: list[int]) -> Graph:

@@ -6,13 +6,16 @@ import hashlib
 import os
 import stat
 from collections.abc import Iterator
+from io import BufferedReader
 from pathlib import Path
 from typing import BinaryIO
 
+from .packed import Unpacked
 from .strict import Rejected, need_integer, need_keys, need_object, need_text, read_json
 
-MANIFEST, EVIDENCE = "manifest.json", "evidence.jsonl"
-MOST_BYTES, MOST_EVIDENCE, MOST_LINE = 1 << 28, 1 << 32, 1 << 26
+MANIFEST, EVIDENCE, PACKED = "manifest.json", "evidence.jsonl", "evidence.jsonl.gz"
+KEPT = (MANIFEST, EVIDENCE, PACKED)
+MOST_BYTES, MOST_LARGE, MOST_LINE = 1 << 28, 1 << 32, 1 << 26
 MOST_MANIFEST = 1 << 26
 # Never wait for a pipe, never follow a link put there between looking and opening.
 _FLAGS = os.O_RDONLY | sum(
@@ -29,11 +32,12 @@ class Files:
     def __init__(self, folder: Path) -> None:
         self.folder = folder
         self.claim_name = ""
+        self.evidence = EVIDENCE
         self.named: set[str] = set()
         self._digests: dict[str, str] = {}
 
     def read_manifest(self) -> None:
-        """Read the manifest and compare the digest of every file it lists."""
+        """Read the manifest; what it lists is looked at in `compare` and in reading."""
         with self._open(MANIFEST, MOST_MANIFEST) as file:
             data = file.read()
         try:
@@ -45,26 +49,49 @@ class Files:
             raise Rejected(f"{MANIFEST} is of format {manifest['format']}, and this reads 1")
         self._digests = need_object(manifest["sha256"], "sha256")
         self.claim_name = need_text(manifest["claim"], "claim")
-        if "/" in self.claim_name or self.claim_name == EVIDENCE or MANIFEST in self._digests:
+        if "/" in self.claim_name or self.claim_name in KEPT or MANIFEST in self._digests:
             raise Rejected(f"{MANIFEST} lists itself, or names no claim file beside it")
+
+    def compare(self, large: str | None) -> None:
+        """Compare the digest of every file that is listed. large: one that may be large.
+
+        One file of evidence, so that no two readers read two different ones.
+        """
+        listed = [name for name in (EVIDENCE, PACKED) if name in self._digests]
+        if len(listed) != 1:
+            wrong = "lists both" if listed else "does not list"
+            raise Rejected(f"the manifest {wrong} {EVIDENCE} {'and' if listed else 'or'} {PACKED}")
+        self.evidence = listed[0]
         for name in self._digests:
-            for _ in self._read_pieces(name):
+            most = MOST_LARGE if name in (large, self.evidence) else MOST_BYTES
+            for _ in self._read_pieces(name, most):
                 pass
 
     def read(self, name: str) -> bytes:
         """Return a file that the manifest lists."""
         self._need_listed(name)
-        return b"".join(self._read_pieces(name))
+        return b"".join(self._read_pieces(name, MOST_BYTES))
 
-    def read_lines(self) -> Iterator[bytes]:
-        """Yield the lines of the evidence; a line too long comes in pieces, which are no lines."""
-        self._need_listed(EVIDENCE)
+    def read_lines(self, name: str) -> Iterator[bytes]:
+        """Yield the lines of the evidence or of a list, one at a time, with their ends.
+
+        A line too long comes in pieces, which are no lines. What is hashed is what is
+        handed out: when the last line has been, the digest of all of them was right, and
+        until then nobody may accept anything for good.
+        """
+        self._need_listed(name)
+        if name == PACKED:
+            pieces = self._read_pieces(name, MOST_LARGE, 1 << 14)
+            with BufferedReader(Unpacked(pieces, name, MOST_LARGE), 1 << 16) as text:
+                while line := text.readline(MOST_LINE):
+                    yield line
+            return
         digest = hashlib.sha256()
-        with self._open(EVIDENCE, MOST_EVIDENCE) as file:
+        with self._open(name, MOST_LARGE) as file:
             while line := file.readline(MOST_LINE):
                 digest.update(line)
                 yield line
-        self._compare(EVIDENCE, digest.hexdigest())
+        self._compare(name, digest.hexdigest())
 
     def need_all_named(self) -> None:
         """Refuse a manifest that lists what nothing names."""
@@ -81,11 +108,11 @@ class Files:
         if digest != self._digests[name]:
             raise Rejected(f"{name} has changed since the manifest was written")
 
-    def _read_pieces(self, name: str) -> Iterator[bytes]:
+    def _read_pieces(self, name: str, most: int, size: int = 1 << 20) -> Iterator[bytes]:
         """Yield a file's bytes in pieces; after the last one its digest was right."""
         digest = hashlib.sha256()
-        with self._open(name, MOST_EVIDENCE if name == EVIDENCE else MOST_BYTES) as file:
-            while piece := file.read(1 << 20):
+        with self._open(name, most) as file:
+            while piece := file.read(size):
                 digest.update(piece)
                 yield piece
         self._compare(name, digest.hexdigest())

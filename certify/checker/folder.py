@@ -9,7 +9,7 @@ from pathlib import Path
 from typing import Any
 
 from .claims import Claim, Key
-from .files import EVIDENCE, MANIFEST, Files
+from .files import KEPT, Files
 from .graphs import Graph
 from .records import Verdict, check_record, name_key
 from .strict import Rejected, printable
@@ -37,6 +37,11 @@ class FolderCheck:
         return self._files.claim_name
 
     @property
+    def evidence_name(self) -> str:
+        """The name of the file of evidence, as the manifest says."""
+        return self._files.evidence
+
+    @property
     def accepted(self) -> bool:
         """Whether every instance was read, each was accepted, and nothing else was wrong."""
         fine = not (self.rejected or self.left_open or self.complaints)
@@ -52,8 +57,9 @@ class FolderCheck:
         try:
             self._files.read_manifest()
             claim = Claim(self._files.read(self.claim_name))
-            if claim.list_name in (self.claim_name, EVIDENCE, MANIFEST):
+            if claim.list_name in (self.claim_name, *KEPT):
                 raise Rejected(f"the list of graphs cannot be {claim.list_name}")
+            self._files.compare(claim.list_name if claim.has_lines else None)
             yield from self._check_lines(claim)
             self._check_counts(claim)
             self._files.need_all_named()
@@ -64,9 +70,9 @@ class FolderCheck:
             self.complaints.append(printable(f"the folder cannot be read: {error!r}"))
 
     def _check_lines(self, claim: Claim) -> Iterator[Verdict]:
-        lines = self._files.read_lines()
+        lines = self._files.read_lines(self.evidence_name)
         number = 0
-        for key, graph in claim.instances(self._files.read):
+        for key, graph in claim.instances(self._files.read, self._files.read_lines):
             line = next(lines, None)
             number += 1
             if line is None:
@@ -81,7 +87,7 @@ class FolderCheck:
         if number == 0:
             raise Rejected("the claim has no instances")
         if next(lines, None) is not None:
-            raise Rejected(f"{EVIDENCE}:{number + 1}: a line too many")
+            raise Rejected(f"{self.evidence_name}:{number + 1}: a line too many")
 
     def _check_line(
         self, claim: Claim, key: Key, graph: Graph, line: bytes, number: int
@@ -116,7 +122,7 @@ def complain(check: FolderCheck, verdict: Verdict) -> str:
     claim = check.folder / check.claim_name
     state = "open" if verdict.is_open else "rejected"
     name = name_key(verdict.instance)
-    where = f"{check.folder / EVIDENCE}:{verdict.line}" if verdict.line else str(claim)
+    where = f"{check.folder / check.evidence_name}:{verdict.line}" if verdict.line else str(claim)
     return (
         f"{where}: {state}: instance {name}: {verdict.reason}\n"
         f"  run: certify prove {claim} --redo {name}"

@@ -2,22 +2,27 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
-from io import BytesIO
+from collections.abc import Iterable, Iterator
 
 from .graphs import Edge, Graph
 from .simple import build_graph, limit_vertices
 from .strict import BadClaim
 
+MOST_LINE = 1 << 26
 
-def read_lines(data: bytes) -> Iterator[Graph]:
-    """Yield the graph of each line."""
-    for header in (b">>graph6<<", b">>sparse6<<"):
-        if data.startswith(header):
-            data = data[len(header) :]
-            break
-    for number, line in enumerate(BytesIO(data), 1):
+
+def read_lines(lines: Iterable[bytes]) -> Iterator[Graph]:
+    """Yield the graph of each line, with one line in memory."""
+    for number, line in enumerate(lines, 1):
+        if number == 1:
+            header = line[: line.find(b"<<") + 2]
+            if header in (b">>graph6<<", b">>sparse6<<"):
+                line = line[len(header) :]
+                if not line:
+                    continue  # a header alone, without the end of a line
         try:
+            if len(line) >= MOST_LINE and not line.endswith(b"\n"):
+                raise BadClaim("the line is too long")
             yield _read_line(line)
         except BadClaim as error:
             raise BadClaim(f"line {number}: {error}") from None

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable, Iterator
+from io import BytesIO
 
 from .graph6 import read_lines
 from .graphml import read_graphml
@@ -15,6 +16,10 @@ ENDINGS = {
     ".g6": "graph6", ".s6": "sparse6", ".col": "dimacs", ".dimacs": "dimacs",
     ".graphml": "graphml", ".edges": "edges", ".txt": "edges",
 }  # fmt: skip
+
+# In these every line is a graph; they are read line by line.
+OF_LINES = ("graph6", "sparse6")
+MOST_GRAPHS = 10_000_000
 
 # Of white space only space, tab and line end; no control character; no byte order mark.
 _STRANGE = re.compile(r"[^\S\t\n ]|[\x00-\x08\x0e-\x1f\x7f-\x9f\ufeff]")
@@ -107,14 +112,18 @@ def _read_edges(data: bytes) -> Iterator[Graph]:
     yield graph
 
 
+def _read_graphs(data: bytes) -> Iterator[Graph]:
+    yield from read_lines(BytesIO(data))
+
+
 def _read_graphml(data: bytes) -> Iterator[Graph]:
     _read_text(data)
     yield from read_graphml(data)
 
 
 READERS: dict[str, Callable[[bytes], Iterator[Graph]]] = {
-    "graph6": read_lines,
-    "sparse6": read_lines,
+    "graph6": _read_graphs,
+    "sparse6": _read_graphs,
     "dimacs": _read_dimacs,
     "graphml": _read_graphml,
     "edges": _read_edges,

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import json
-import zlib
 from collections.abc import Callable
 from dataclasses import dataclass
 from typing import Any
@@ -15,6 +14,7 @@ from .counting import check_counting
 from .endless import check_endless, find_counterexample
 from .graphs import Graph, Question
 from .obstruction import check_obstruction
+from .packed import unpack
 from .strict import (
     Rejected,
     need_integer,
@@ -29,7 +29,6 @@ from .witness import check_witness
 
 ReadFile = Callable[[str], bytes]
 
-MOST_TEXT = 1 << 28
 KEYS = {"instance", "vertices", "edges", "answer", "kind", "evidence", "length"}
 LEFT_OPEN = "left open: no evidence was found within the limits of the search"
 
@@ -145,7 +144,7 @@ def _check_kind(
         names = [f"clauses/{name_key(key)}.{form}.gz" for form in ("cnf", "lrat", "drat")]
         if [body.get(form) for form in ("cnf", "lrat", "drat")] != names:
             raise Rejected(f"the files are not named {', '.join(names)}")
-        cnf, lrat, drat = (_unpack(read(name), name) for name in names)
+        cnf, lrat, drat = (unpack(read(name), name) for name in names)
         check_clauses(question, body, cnf, lrat, drat)
     elif kind in _READABLE:
         _READABLE[kind](question, body)
@@ -159,20 +158,6 @@ _READABLE = {
     "cases": check_cases,
     "sweep": check_sweep,
 }
-
-
-def _unpack(data: bytes, name: str) -> bytes:
-    """Return what a gzip file of one member holds, refusing one that unpacks without end."""
-    unpacker = zlib.decompressobj(wbits=31)
-    try:
-        text = unpacker.decompress(data, MOST_TEXT + 1)
-    except zlib.error:
-        raise Rejected(f"{name} is not a gzip file") from None
-    if len(text) > MOST_TEXT:
-        raise Rejected(f"{name} holds more than 2^28 characters")
-    if not unpacker.eof or unpacker.unused_data:
-        raise Rejected(f"{name} is cut short, or goes on after its end")
-    return text
 
 
 def measure(kind: str, body: dict[str, Any]) -> int:

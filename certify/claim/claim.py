@@ -42,6 +42,7 @@ class Claim:
 
     name, raw: the file's name and its bytes. where: the file as messages name it.
     title, statement: for readers, empty when they are left out.
+    ranges, keep: one range a parameter, and which rows are instances (None: all).
     rows: the values of the parameters, one row an instance; of no meaning for a
     list of graphs. growing: the parameter of an endless claim that has no last value,
     of which the rows hold the first one; None for other claims.
@@ -58,6 +59,8 @@ class Claim:
     required: tuple[tuple[Vertex, Vertex], ...]
     forbidden: tuple[tuple[Vertex, Vertex], ...]
     parameters: tuple[str, ...]
+    ranges: tuple[Range, ...]
+    keep: Expression | None
     rows: tuple[Row, ...]
     answers: Answers
     growing: str | None = None
@@ -123,9 +126,13 @@ def read_claim(path: Path) -> Claim:
     Errors: ClaimError, with the file, the line, the key and what is wrong there.
     Cost: linear in the file and in the number of instances.
     """
-    document = read_document(path)
+    return build_claim(read_document(path), path.name)
+
+
+def build_claim(document: Document, name: str) -> Claim:
+    """Build the claim of a document; name: of its file. Errors: as `read_claim`."""
     keys.check_keys(document)
-    return _Reader(document).claim(path.name)
+    return _Reader(document).claim(name)
 
 
 class _Reader:
@@ -139,6 +146,8 @@ class _Reader:
         self.answers = keys.table(document, "answers")
         self.parameters = tuple(name for name in self.instances if name != "where")
         self.coordinates: tuple[str, ...] = ()
+        self.ranges: tuple[Range, ...] = ()
+        self.keep: Expression | None = None
         self.growing: str | None = None
 
     def fault(self, key: str, problem: str) -> ClaimError:
@@ -161,6 +170,8 @@ class _Reader:
             required=self._edges("required"),
             forbidden=self._edges("forbidden"),
             parameters=self.parameters,
+            ranges=self.ranges,
+            keep=self.keep,
             rows=rows,
             answers=self._answers(),
             growing=self.growing,
@@ -204,13 +215,13 @@ class _Reader:
                 raise ClaimError(f"{error}{keys.belongs(name)}") from None
             ranges.append(range_)
             self._check_growth(name, range_)
-        keep = None
+        self.ranges = tuple(ranges)
         if "where" in self.instances:
-            keep = self._truth(
+            self.keep = self._truth(
                 self.instances["where"], Scope(self.parameters), "instances", "where"
             )
-            self._check_steady("instances.where", keep)
-        return find_rows(self.parameters, ranges, keep, self.document.where("instances"))
+            self._check_steady("instances.where", self.keep)
+        return find_rows(self.parameters, ranges, self.keep, self.document.where("instances"))
 
     def _check_growth(self, name: str, range_: Range) -> None:
         """Take a parameter without a last value for the growing one, if nothing forbids it."""
@@ -290,16 +301,7 @@ class _Reader:
         for key in self.graph:
             if key not in ("list", "format"):
                 raise self.fault(f"graph.{key}", f"with list there is no {key}; choose one of them")
-        name = keys.text(self.document, self.graph["list"], "graph", "list")
-        parts = name.split("/")
-        if any(part in ("", ".", "..") for part in parts) or not name.isprintable() or "\\" in name:
-            raise self.fault(
-                "graph.list",
-                f"{shown(name)} is not the name of a file in the folder of the claim; "
-                'write it without a leading "/" and without ".."',
-            )
-        if name in ("evidence.jsonl", "manifest.json") or parts[0] in ("clauses", ".unfinished"):
-            raise self.fault("graph.list", f"{shown(name)} is kept for the evidence; rename it")
+        name = keys.file_name(self.document, self.graph["list"], "graph", "list")
         if "format" not in self.graph:
             return GraphList(name, None)
         value = self.graph["format"]

@@ -24,6 +24,8 @@ TABLE_KEYS: Mapping[str, tuple[str, ...]] = {
     "graph": ("vertices", "adjacent", "where", "list", "format"),
     "answers": ("exists", "impossible"),
 }
+KEPT_FILES = ("evidence.jsonl", "evidence.jsonl.gz", "manifest.json")
+KEPT_FOLDERS = ("clauses", ".unfinished")
 
 
 def check_keys(document: Document) -> None:
@@ -62,6 +64,26 @@ def text(document: Document, value: object, *path: str) -> str:
             f"{document.where(*path)}: a text in quotes is needed, and this is {shown(value)}"
         )
     return value
+
+
+def file_name(document: Document, value: object, *path: str) -> str:
+    """Return a value that has to be the name of a file that is given with the claim.
+
+    Errors: ClaimError, also for a name that the folder of evidence needs itself.
+    """
+    name = text(document, value, *path)
+    parts = name.split("/")
+    strange = any(part in ("", ".", "..") for part in parts) or not name.isprintable()
+    if strange or "\\" in name or ":" in name:
+        raise ClaimError(
+            f"{document.where(*path)}: {shown(name)} is not the name of a file in the folder of "
+            'the claim; write it without a leading "/", without ".." and without ":"'
+        )
+    if name in KEPT_FILES or parts[0] in KEPT_FOLDERS:
+        raise ClaimError(
+            f"{document.where(*path)}: {shown(name)} is kept for the evidence; rename it"
+        )
+    return name
 
 
 def one_of(document: Document, value: object, known: Iterable[str], *path: str) -> str:

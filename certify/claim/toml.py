@@ -62,8 +62,14 @@ def read_document(path: Path) -> Document:
     Errors: ClaimError, when the file cannot be read, is no regular file, is too
     large, is not UTF-8, or is not TOML.
     """
-    shown = str(path)
-    raw = _read_bytes(path, shown)
+    return parse_document(_read_bytes(path, str(path)), str(path))
+
+
+def parse_document(raw: bytes, shown: str) -> Document:
+    """Read the bytes of a TOML file; shown: the file as messages name it.
+
+    Errors: ClaimError.
+    """
     if raw.startswith(b"\xef\xbb\xbf"):
         raise ClaimError(
             f"{shown}:1: the file begins with a byte order mark; save it as plain UTF-8"

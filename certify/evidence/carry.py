@@ -14,6 +14,9 @@ from certify.evidence.counting import Counting
 from certify.evidence.obstruction import Obstruction
 from certify.graph.graph import Graph, edge_between
 
+CARRIED = frozenset({"counting", "obstruction"})
+"""The kinds that are carried over."""
+
 
 class _GoneError(Exception):
     """A vertex of the reason is not in the other graph."""

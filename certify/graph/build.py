@@ -13,11 +13,12 @@ from typing import cast
 
 from certify.claim.claim import Claim, Key
 from certify.claim.endless import endless_key
-from certify.claim.instances import MAX_INSTANCES, Row, in_instance, name_key, number
+from certify.claim.instances import Row, in_instance, name_key, number
 from certify.claim.parts import Rule, Vertex
-from certify.errors import ClaimError, GraphFileError
-from certify.graph.files import read_sources
+from certify.errors import ClaimError
+from certify.graph.files import format_of, open_list, read_source, split_sources
 from certify.graph.graph import Edge, Graph, Label, edge_between
+from certify.graph.graph6 import Readable
 from certify.graph.question import Ends, Question, build_cycle_question, build_path_question
 
 MAX_VERTICES = 4_000
@@ -44,10 +45,11 @@ class Instance:
         return name_key(self.key)
 
 
-def instances(claim: Claim, folder: Path) -> Iterator[Instance]:
+def instances(claim: Claim, folder: Path, stream: Readable | None = None) -> Iterator[Instance]:
     """Yield each instance with its graph, in order, one graph at a time.
 
-    folder: where the claim's list of graphs is, if it has one.
+    folder: where the claim's list of graphs is, if it has one. stream: that list, open,
+    if it is to be read from there.
     Errors: ClaimError for a rule, GraphFileError for a list, when the instance
     concerned is asked for.
     """
@@ -60,11 +62,39 @@ def instances(claim: Claim, folder: Path) -> Iterator[Instance]:
         for key in claim.instance_keys():
             yield Instance(key, build_graph(claim, key))
         return
+    for position, source in list_sources(claim, folder, stream):
+        yield read_instance(claim, folder, position, source)
+
+
+def list_sources(
+    claim: Claim, folder: Path, stream: Readable | None = None
+) -> Iterator[tuple[int, bytes]]:
+    """Yield position and source of each graph of a claim's list, without reading the graphs.
+
+    As `instances` otherwise; `read_instance` makes an instance of each.
+    """
+    path, format = _list_of(claim, folder)
+    if stream is not None:
+        yield from split_sources(stream, format, str(path))
+        return
+    with open_list(path, format) as file:
+        yield from split_sources(file, format, str(path))
+
+
+def read_instance(claim: Claim, folder: Path, position: int, source: bytes) -> Instance:
+    """Return the instance of a source, as `list_sources` yields it.
+
+    Errors: GraphFileError, with file and line.
+    """
+    path, format = _list_of(claim, folder)
+    return Instance(position, read_source(source, format, str(path), position), source)
+
+
+def _list_of(claim: Claim, folder: Path) -> tuple[Path, str]:
+    if isinstance(claim.graphs, Rule):
+        raise ClaimError(f"{claim.where}: this claim has a rule, and no list of graphs")
     path = folder / claim.graphs.name
-    for position, (graph, source) in enumerate(read_sources(path, claim.graphs.format), 1):
-        if position > MAX_INSTANCES:
-            raise GraphFileError(f"{path}: more than {MAX_INSTANCES:,} graphs; split the list")
-        yield Instance(position, graph, source)
+    return path, claim.graphs.format or format_of(path)
 
 
 def build_graph(claim: Claim, key: dict[str, int]) -> Graph:
@@ -99,6 +129,19 @@ def build_graph(claim: Claim, key: dict[str, int]) -> Graph:
     return Graph(tuple(labels), tuple(edges))
 
 
+def build_labels(claim: Claim, key: dict[str, int]) -> tuple[Label, ...]:
+    """Return the labels of the graph of an instance, in order; nothing for a list.
+
+    Errors: ClaimError. Cost: linear in the vertices; no rule for edges is looked at.
+    """
+    if not isinstance(claim.graphs, Rule):
+        return ()
+    try:
+        return tuple(_vertices(claim.graphs, claim.row(key))[0])
+    except ClaimError as error:
+        raise in_instance(error, key) from None
+
+
 def shown_label(label: Label) -> str:
     """Return a label as a message shows it: `7`, `(1, 2)`, or the name."""
     return str(label)
@@ -131,6 +174,28 @@ def build_question(claim: Claim, key: Key, graph: Graph) -> Question:
         required=wanted,
         forbidden=gone,
         absent=absent,
+    )
+
+
+@dataclass(frozen=True)
+class NamedVertices:
+    """The vertices that a claim names, by number; None where the graph does not have one."""
+
+    ends: tuple[int | None, ...]
+    required: tuple[tuple[int | None, int | None], ...]
+    forbidden: tuple[tuple[int | None, int | None], ...]
+
+
+def name_vertices(claim: Claim, key: Key, graph: Graph) -> NamedVertices:
+    """Return the vertices that a claim names, in an instance's graph.
+
+    Errors: ClaimError when one has no value.
+    """
+    find = _Finder(graph, claim.row(key))
+    return NamedVertices(
+        tuple(find.vertex(end) for end in claim.ends),
+        tuple((find.vertex(u), find.vertex(v)) for u, v in claim.required),
+        tuple((find.vertex(u), find.vertex(v)) for u, v in claim.forbidden),
     )
 
 

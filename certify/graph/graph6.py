@@ -11,7 +11,7 @@ from __future__ import annotations
 from collections.abc import Iterable, Iterator
 from functools import lru_cache
 from itertools import compress
-from typing import BinaryIO
+from typing import Protocol
 
 from certify.errors import GraphFileError
 from certify.graph.graph import Edge, Graph
@@ -26,12 +26,35 @@ _DIGITS = bytes.maketrans(b"\0\1", b"01")
 _FEW = 128  # vertices; above, the list of all pairs is not worth remembering
 
 
-def read_lines(file: BinaryIO, shown: str) -> Iterator[tuple[Graph, bytes]]:
+class Readable(Protocol):
+    """What can be read from its beginning to its end: an open file, a pipe."""
+
+    def readline(self, limit: int, /) -> bytes:
+        """Return the next line, or so many bytes of it; empty at the end."""
+        ...
+
+    def read(self, limit: int, /) -> bytes:
+        """Return so many bytes, fewer only at the end."""
+        ...
+
+
+def read_lines(file: Readable, shown: str) -> Iterator[tuple[Graph, bytes]]:
     """Yield the graph of each line, sparse6 after ":", else graph6, and the line.
 
     shown: the file as messages name it.
     Errors: GraphFileError with the line, for anything that is not a graph, cut
     short, or continued; and for a file without any graph.
+    """
+    for number, line in split_lines(file, shown):
+        yield read_line(line.removesuffix(b"\n"), f"{shown}:{number}"), line
+
+
+def split_lines(file: Readable, shown: str) -> Iterator[tuple[int, bytes]]:
+    """Yield number and text of each line, with a plain end, and without the header.
+
+    Whether a line is a graph is for `read_line` to see; what only the file shows, a line of
+    sparse6 without an end and a file without any graph, is seen here.
+    Errors: GraphFileError. Cost: linear, with one line in memory.
     """
     empty = True
     for number, line in enumerate(iter(lambda: file.readline(MAX_LINE + 1), b""), 1):
@@ -43,11 +66,11 @@ def read_lines(file: BinaryIO, shown: str) -> Iterator[tuple[Graph, bytes]]:
         if number == 1:
             headers = [header for header in _HEADERS if line.startswith(header)]
             line = line.removeprefix(headers[0]) if headers else line
-        graph = read_line(line, where)
         if line.startswith(b":") and not ended:
             # graph6 shows by its length that it is whole; sparse6 does not.
+            read_line(line, where)  # what is wrong inside the line is said first
             raise GraphFileError(f"{where}: the line has no end, so it may be cut short")
-        yield graph, line + b"\n"
+        yield number, line + b"\n"
         empty = False
     if empty:
         raise GraphFileError(f"{shown}: the file holds no graph")

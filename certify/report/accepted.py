@@ -6,7 +6,7 @@ from pathlib import Path
 
 from certify.checker import FolderCheck, check_folder
 from certify.errors import ContradictionError, OpenError
-from certify.evidence.store import claim_name
+from certify.evidence.lines import claim_name
 
 
 def need_accepted(folder: Path, *, may_be_open: bool) -> FolderCheck:

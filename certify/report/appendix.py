@@ -19,8 +19,8 @@ from pathlib import Path
 from certify.checker import FolderCheck
 from certify.claim.claim import read_claim
 from certify.claim.parts import Rule
-from certify.errors import InputError
-from certify.evidence.store import EVIDENCE, MANIFEST
+from certify.evidence.disk import write_given
+from certify.evidence.lines import evidence_name, read_manifest
 from certify.report.accepted import need_accepted
 from certify.report.answers import Shown, explain_lengths, show_answers
 from certify.report.blocks import Block, Paragraph, Rows, mark
@@ -70,12 +70,9 @@ def render_appendix(folder: Path, form: str) -> Appendix:
 def write_text(path: Path, text: str) -> None:
     """Write a file.
 
-    Errors: InputError when that cannot be.
+    Errors: DiskError when that cannot be.
     """
-    try:
-        path.write_text(text, encoding="utf-8", newline="\n")
-    except OSError as error:
-        raise InputError(f"{path}: cannot write here: {error.strerror}") from None
+    write_given(path, text.encode())
 
 
 class _Writer:
@@ -85,14 +82,16 @@ class _Writer:
         self.folder, self.check = folder, check
         self.claim = read_claim(folder / check.claim_name)
         self.words = ClaimWords(self.claim, check.answers.total() + check.left_open)
-        self.digests: dict[str, str] = json.loads((folder / MANIFEST).read_bytes())["sha256"]
+        self.digests: dict[str, str] = read_manifest(folder)["sha256"]
+        self.file = evidence_name(folder)
         self.families: list[Family] = []
         if self.claim.growing is None:
             self.items = list(read_items(self.claim, folder))
         else:
             self.families = list(read_families(self.claim, folder))
             self.items = [item for family in self.families for item in family.small]
-        self.endless = FamilyWords(self.words, self.families, self.digests[EVIDENCE])
+        digest = self.digests[self.file]
+        self.endless = FamilyWords(self.words, self.families, self.file, digest)
         self.prefix = f"evidence:{hashlib.sha256(self.claim.raw).hexdigest()[:8]}:"
 
     def document(self) -> Document:
@@ -233,7 +232,7 @@ class _Writer:
     def _point_to(self, item: Item) -> list[Block]:
         """Return where exactly the evidence of a computation lies."""
         body = item.record["evidence"]
-        place = f"line {item.line} of {mark(f'`{EVIDENCE}`')}"
+        place = f"line {item.line} of {mark(f'`{self.file}`')}"
         if self.families:
             place += f" (among the {mark('`small`')} ones, for {self._name(item)})"
         if item.record["kind"] == "sweep":
@@ -262,7 +261,7 @@ class _Writer:
         if len(places) > MOST_WITNESSES:
             first, last = self.items[places[0]].line, self.items[places[-1]].line
             lines = f"line {first}" if first == last else f"the lines {first} to {last}"
-            where = f"{lines} of {mark(f'`{EVIDENCE}`')}"
+            where = f"{lines} of {mark(f'`{self.file}`')}"
             return [*parts, Paragraph(f"There are {len(places)}, and they are in {where}.")]
         parts.append(
             Paragraph(

@@ -272,7 +272,7 @@ def _outline(words: Words, nodes: list[list[Any]]) -> list[Block]:
     return [
         Paragraph(
             f"The proof distinguishes {count_of(total, 'case')}, which are closed {join(how)}."
-            f"{start} It is too long to be read, so it is not printed here. The file "
-            f"evidence.jsonl holds it. To go through all of it: {HOW_TO_CHECK}."
+            f"{start} It is too long to be read, so it is not printed here. The "
+            f"evidence file holds it. To go through all of it: {HOW_TO_CHECK}."
         )
     ]

@@ -11,7 +11,6 @@ from collections.abc import Sequence
 from certify.claim.language import Expression
 from certify.claim.periodic import PeriodicSet
 from certify.evidence.endless import Recipe
-from certify.evidence.store import EVIDENCE
 from certify.report.answers import Shown
 from certify.report.blocks import Block, Paragraph, Rows, mark
 from certify.report.document import Heading, Part, Proof, Statement
@@ -30,10 +29,12 @@ _SHORT_ANSWER = 40
 
 
 class FamilyWords:
-    """The wording for the rows of one endless claim. digest: of the evidence file."""
+    """The wording for the rows of one endless claim. file: of the evidence, with its digest."""
 
-    def __init__(self, words: ClaimWords, families: Sequence[Family], digest: str) -> None:
-        self.words, self.families, self.digest = words, families, digest
+    def __init__(
+        self, words: ClaimWords, families: Sequence[Family], file: str, digest: str
+    ) -> None:
+        self.words, self.families, self.file, self.digest = words, families, file, digest
         self.names = {
             family.line: f"family:{number}" for number, family in enumerate(self._settled, 1)
         }
@@ -178,7 +179,7 @@ class FamilyWords:
         """Return the proof; what the states are is told in the first one alone."""
         argument = Argument(family.strip, family.body, set_maths)
         first = self._settled[0]
-        place = f"line {family.line} of {mark(f'`{EVIDENCE}`')}, under {mark('`classes`')}"
+        place = f"line {family.line} of {mark(f'`{self.file}`')}, under {mark('`classes`')}"
         numbers = f"The numbers of states and the answers found from them are in {place}."
         if family is not first:
             name = family.strip.growing
@@ -241,7 +242,7 @@ class FamilyWords:
             recipe = Recipe(body["n"], body["cut"], body["step"], tuple(body["order"]))
             parts += argument.say_construction(recipe)
         if left:
-            where = f"line {family.line} of {mark(f'`{EVIDENCE}`')}, under {mark('`recipes`')}"
+            where = f"line {family.line} of {mark(f'`{self.file}`')}, under {mark('`recipes`')}"
             parts.append(Paragraph(f"{count_of(left, 'more recipe')} of this kind: {where}."))
         return parts
 

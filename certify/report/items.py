@@ -16,7 +16,7 @@ from certify.claim.claim import Claim
 from certify.claim.endless import row_of
 from certify.evidence.base import count_integers
 from certify.evidence.endless import Endless
-from certify.evidence.store import EVIDENCE
+from certify.evidence.lines import read_evidence
 from certify.graph.build import build_question, instances
 from certify.graph.graph import Graph
 from certify.graph.question import Question
@@ -79,7 +79,7 @@ def read_items(claim: Claim, folder: Path) -> Iterator[Item]:
     folder: of evidence that the checker has read to its end.
     Cost: that of building the graphs.
     """
-    lines = (folder / EVIDENCE).read_bytes().splitlines()
+    lines = read_evidence(folder)
     for number, (instance, line) in enumerate(zip(instances(claim, folder), lines, strict=True), 1):
         question = build_question(claim, instance.key, instance.graph)
         yield Item(json.loads(line), instance.graph, question, number)
@@ -91,7 +91,7 @@ def read_families(claim: Claim, folder: Path) -> Iterator[Family]:
     folder: of evidence that the checker has read to its end.
     Cost: that of building the graphs of the small n.
     """
-    for number, line in enumerate((folder / EVIDENCE).read_bytes().splitlines(), 1):
+    for number, line in enumerate(read_evidence(folder), 1):
         record = json.loads(line)
         strip = read_strip(claim, row_of(claim, record["instance"]))
         small = _read_small(strip, record, number) if record["kind"] == Endless.kind else ()

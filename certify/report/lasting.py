@@ -36,7 +36,7 @@ class Lasting:
 
 @dataclass(frozen=True)
 class Settled:
-    """A stored instance: its record, read, and its graph."""
+    """A stored instance: its record, read, and its graph, of which the vertices are enough."""
 
     content: dict[str, Any]
     graph: Graph
@@ -57,21 +57,47 @@ class Settled:
         return carried is not None and carried.body() == self.content["evidence"]
 
 
+class LastingRuns:
+    """Finds the runs of at least two instances with one reason, as instances come in.
+
+    Of these it keeps the last one, and the keys of the run that goes on.
+    """
+
+    def __init__(self) -> None:
+        self._keys: list[Key] = []
+        self._last: Settled | None = None
+        self._parameter: str | None = None
+
+    def add(self, item: Settled) -> Iterator[Lasting]:
+        """Take the next instance, and yield the run that ends before it, if one does."""
+        name = _next_parameter(self._keys[-1], item.key) if self._keys else None
+        last = self._last
+        if (
+            last is None
+            or name is None
+            or self._parameter not in (None, name)
+            or not item.has_reason_of(last)
+        ):
+            yield from self.end()
+            name = None
+        self._keys.append(item.key)
+        self._last, self._parameter = item, name
+
+    def end(self) -> Iterator[Lasting]:
+        """Yield the run that goes on, if it is one; nothing of it is kept."""
+        keys, self._keys, self._last = self._keys, [], None
+        yield from _finish(keys, self._parameter)
+
+
 def find_lasting(settled: Iterable[Settled]) -> Iterator[Lasting]:
     """Yield the runs of at least two instances with one reason, in order.
 
     settled: the instances in the order of the claim.
     """
-    run: list[Settled] = []
-    parameter: str | None = None
+    runs = LastingRuns()
     for item in settled:
-        name = _next_parameter(run[-1].key, item.key) if run else None
-        if name is None or parameter not in (None, name) or not item.has_reason_of(run[-1]):
-            yield from _finish(run, parameter)
-            run, name = [], None
-        run.append(item)
-        parameter = name
-    yield from _finish(run, parameter)
+        yield from runs.add(item)
+    yield from runs.end()
 
 
 def find_lasting_around(item: Settled, look_up: Callable[[Key], Settled | None]) -> Lasting | None:
@@ -86,7 +112,7 @@ def find_lasting_around(item: Settled, look_up: Callable[[Key], Settled | None])
         after = _walk(item, parameter, 1, look_up)
         run = [*reversed(before), item, *after]
         if len(run) > 1:
-            return next(_finish(run, parameter))
+            return next(_finish([item.key for item in run], parameter))
     return None
 
 
@@ -114,7 +140,6 @@ def _next_parameter(one: Key, other: Key) -> str | None:
     return None
 
 
-def _finish(run: list[Settled], parameter: str | None) -> Iterator[Lasting]:
+def _finish(run: list[Key], parameter: str | None) -> Iterator[Lasting]:
     if parameter is not None:
-        keys = tuple(item.key for item in run if isinstance(item.key, dict))
-        yield Lasting(keys, parameter)
+        yield Lasting(tuple(key for key in run if isinstance(key, dict)), parameter)

@@ -6,7 +6,7 @@ from collections.abc import Mapping, Sequence
 from importlib.metadata import PackageNotFoundError, version
 
 from certify.checker import FolderCheck
-from certify.evidence.store import EVIDENCE
+from certify.evidence.lines import PACKED, PLAIN
 from certify.report.blocks import Paragraph, Rows, mark
 from certify.report.cases import MOST_NODES
 from certify.report.document import Heading, Part
@@ -39,7 +39,8 @@ def say_limits(
         "with the program that searched, and believes nothing but the files.",
         *_say_machine(items, families),
     ]
-    files = [check.claim_name, *([claim.list_name] if claim.list_name else []), EVIDENCE]
+    given = [check.claim_name, *([claim.list_name] if claim.list_name else [])]
+    files = given + [name for name in (PLAIN, PACKED) if name in digests]
     rows = tuple((mark(f"`{name}`"), mark(f"`{digests[name]}`")) for name in files)
     return [
         Heading("What was checked, and what is not claimed", 2),

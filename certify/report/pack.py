@@ -21,8 +21,8 @@ from pathlib import Path
 import certify.checker
 from certify.checker import FolderCheck
 from certify.claim.claim import read_claim
-from certify.errors import InputError
-from certify.evidence.store import claim_name
+from certify.evidence.disk import write_given
+from certify.evidence.lines import claim_name
 from certify.report.accepted import need_accepted
 from certify.report.appendix import render_appendix
 from certify.report.page.contents import digest_of, read_files
@@ -48,10 +48,7 @@ def write_pack(folders: Sequence[Path], archive: Path) -> list[str]:
     """
     need_names(folders, taken=_TAKEN)
     files = build_files({folder: need_accepted(folder, may_be_open=False) for folder in folders})
-    try:
-        archive.write_bytes(zip_files(files))
-    except OSError as error:
-        raise InputError(f"{archive}: cannot write here: {error.strerror}") from None
+    write_given(archive, zip_files(files))
     return list(files)
 
 
@@ -134,7 +131,8 @@ says where and why; 4: something is left open.
 {chr(10).join(claims)}
 
 A folder holds the claim, a TOML file short enough to read (which graphs, which instances,
-which answers), `evidence.jsonl` (a line an instance), `clauses/` where a proof is
+which answers), `evidence.jsonl` (a line an instance; of a list of
+graphs compressed, as `evidence.jsonl.gz`), `clauses/` where a proof is
 bulky, and `manifest.json` (the SHA-256 of each). `FORMAT.md` says exactly what they mean
 and when they may be accepted, so that anyone can write another checker; the
 pages hold a second one, in JavaScript, and need no server and no net.

@@ -4,7 +4,7 @@ The checker settles whether evidence is accepted. This asks a program of other
 people for the clause proofs as well. It is believed only when it says exactly
 `s VERIFIED`, and only on a formula whose header and clauses were found to agree
 before: with a header that promises clauses that are not there it would verify
-what is not so.
+what is not so. (The other referee is in the folder `kernel`.)
 """
 
 from __future__ import annotations
@@ -30,11 +30,22 @@ _NUMBERS = re.compile(r"-?[1-9][0-9]*( -?[1-9][0-9]*)* 0|0")
 
 @dataclass(frozen=True)
 class Opinion:
-    """What the referee says of the clause proof of one instance."""
+    """What a referee says of the evidence of one instance.
+
+    taken: whether it takes such evidence at all; what it does not take it does not accept.
+    """
 
     name: str
     accepted: bool
     reason: str
+    taken: bool = True
+
+    @property
+    def verdict(self) -> str:
+        """Return the verdict in words."""
+        if not self.taken:
+            return "not taken"
+        return "accepted" if self.accepted else "rejected"
 
 
 def find_referee() -> str:
@@ -113,8 +124,7 @@ def _ask(program: str, name: str, formula: str, proof: str) -> Opinion:
     return Opinion(name, False, f"{PROGRAM} did not say {VERDICT_LINE!r} but {said or 'nothing'}")
 
 
-def describe(opinion: Opinion) -> str:
+def describe(opinion: Opinion, referee: str) -> str:
     """Return an opinion as the JSON object that the command line prints."""
-    verdict = "accepted" if opinion.accepted else "rejected"
-    content = {"instance": opinion.name, "referee": PROGRAM, "verdict": verdict}
+    content = {"instance": opinion.name, "referee": referee, "verdict": opinion.verdict}
     return json.dumps(content | {"reason": opinion.reason}, sort_keys=True)

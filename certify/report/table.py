@@ -6,7 +6,6 @@ import io
 from collections import Counter
 from collections.abc import Sequence
 from dataclasses import dataclass
-from itertools import groupby
 
 from rich import box
 from rich.console import Console
@@ -28,20 +27,95 @@ class Row:
     contradicts: bool
 
 
-def render_table(rows: Sequence[Row]) -> str:
-    """Return the table as text, and a line that counts.
+@dataclass
+class _Run:
+    """Instances of one answer whose parameter grows by 1."""
+
+    first: int
+    last: int
+    answer: str
+    contradicts: bool
+    kinds: set[str]
+
+
+class Tally:
+    """The table of a claim, made from its instances as they come in.
 
     One parameter: a line for each run of instances with one answer. Two: a grid,
-    first parameter down, second across. Otherwise: counts alone.
+    first parameter down, second across. Otherwise, as for a list: counts alone, and
+    nothing is kept of an instance.
     """
-    parameters = list(rows[0].key) if rows and isinstance(rows[0].key, dict) else []
-    if len(parameters) == 1:
-        table = _render_runs(parameters[0], rows)
-    elif len(parameters) == 2:
-        table = _render_grid(parameters, rows)
-    else:
+
+    def __init__(self, parameters: Sequence[str]) -> None:
+        self.answers: Counter[str] = Counter()
+        self._parameters = tuple(parameters)
+        self._kinds: Counter[str] = Counter()
+        self._against = 0
+        self._runs: list[_Run] = []
+        self._marks: dict[tuple[int, int], str] = {}
+
+    def add(self, row: Row) -> None:
+        """Take the next instance."""
+        self.answers[row.answer] += 1
+        self._kinds[row.kind] += row.answer == "impossible"
+        self._against += row.contradicts
+        if len(self._parameters) == 1:
+            self._add_to_run(row, _value(row.key, self._parameters[0]))
+        elif len(self._parameters) == 2:
+            down, across = (_value(row.key, name) for name in self._parameters)
+            self._marks[down, across] = MARKS[row.answer] + ("!" if row.contradicts else "")
+
+    def _add_to_run(self, row: Row, value: int) -> None:
+        run = self._runs[-1] if self._runs else None
+        if (
+            run is None
+            or run.last + 1 != value
+            or (run.answer, run.contradicts) != (row.answer, row.contradicts)
+        ):
+            run = _Run(value, value, row.answer, row.contradicts, set())
+            self._runs.append(run)
+        run.last = value
+        run.kinds.add(row.kind)
+
+    def render(self) -> str:
+        """Return the table as text, and a line that counts."""
         table = ""
-    return table + _render_counts(rows)
+        if len(self._parameters) == 1:
+            table = self._render_runs()
+        elif len(self._parameters) == 2:
+            table = self._render_grid()
+        return table + self.render_counts()
+
+    def _render_runs(self) -> str:
+        table = Table(self._parameters[0], "answer", "evidence", box=box.SIMPLE)
+        for run in self._runs:
+            span = f"{run.first}" if run.first == run.last else f"{run.first}..{run.last}"
+            note = " (not as claimed)" if run.contradicts else ""
+            table.add_row(span, run.answer + note, ", ".join(sorted(run.kinds)))
+        return _text(table)
+
+    def _render_grid(self) -> str:
+        down, across = self._parameters
+        heads = sorted({value for _, value in self._marks})
+        if len(heads) > MOST_COLUMNS:
+            return ""
+        table = Table(f"{down} \\ {across}", *map(str, heads), box=box.SIMPLE, padding=(0, 1, 0, 0))
+        for value in sorted({value for value, _ in self._marks}):
+            table.add_row(str(value), *(self._marks.get((value, head), "") for head in heads))
+        return _text(table) + "  + exists   - impossible   ? open   ! not as claimed\n"
+
+    def render_counts(self, noun: str = "instance") -> str:
+        """Return the line that counts."""
+        total = self.answers.total()
+        answers = self.answers
+        text = f"{total} {noun if total == 1 else noun + 's'}: {answers['exists']} exist, "
+        text += f"{answers['impossible']} impossible"
+        kinds = [f"{count} {kind}" for kind, count in sorted(self._kinds.items()) if count]
+        if kinds:
+            text += f" ({', '.join(kinds)})"
+        if answers["open"]:
+            text += f", {answers['open']} open"
+        return text + (f"; {self._against} not as claimed" if self._against else "")
 
 
 def render_endless_table(rows: Sequence[tuple[str, str]]) -> str:
@@ -55,62 +129,8 @@ def render_endless_table(rows: Sequence[tuple[str, str]]) -> str:
     return _text(table).rstrip()
 
 
-def _render_runs(name: str, rows: Sequence[Row]) -> str:
-    table = Table(name, "answer", "evidence", box=box.SIMPLE)
-    place = 0
-    for (answer, contradicts, _), group in groupby(
-        enumerate(rows), lambda item: (item[1].answer, item[1].contradicts, _offset(item, name))
-    ):
-        run = [row for _, row in group]
-        first, last = run[0].key, run[-1].key
-        place += len(run)
-        low, high = _value(first, name), _value(last, name)
-        span = f"{low}" if low == high else f"{low}..{high}"
-        note = " (not as claimed)" if contradicts else ""
-        table.add_row(span, answer + note, ", ".join(sorted({row.kind for row in run})))
-    return _text(table)
-
-
-def _offset(item: tuple[int, Row], name: str) -> int:
-    """Return what is constant along a run of consecutive values."""
-    place, row = item
-    return _value(row.key, name) - place
-
-
 def _value(key: Key, name: str) -> int:
     return key[name] if isinstance(key, dict) else key
-
-
-def _render_grid(parameters: Sequence[str], rows: Sequence[Row]) -> str:
-    down, across = parameters
-    heads = sorted({_value(row.key, across) for row in rows})
-    if len(heads) > MOST_COLUMNS:
-        return ""
-    cells = {(_value(row.key, down), _value(row.key, across)): row for row in rows}
-    table = Table(f"{down} \\ {across}", *map(str, heads), box=box.SIMPLE, padding=(0, 1, 0, 0))
-    for value in sorted({value for value, _ in cells}):
-        marks = [_mark(cells.get((value, head))) for head in heads]
-        table.add_row(str(value), *marks)
-    return _text(table) + "  + exists   - impossible   ? open   ! not as claimed\n"
-
-
-def _mark(row: Row | None) -> str:
-    if row is None:
-        return ""
-    return MARKS[row.answer] + ("!" if row.contradicts else "")
-
-
-def _render_counts(rows: Sequence[Row]) -> str:
-    answers = Counter(row.answer for row in rows)
-    kinds = Counter(row.kind for row in rows if row.answer == "impossible")
-    noun = "instance" if len(rows) == 1 else "instances"
-    text = f"{len(rows)} {noun}: {answers['exists']} exist, {answers['impossible']} impossible"
-    if kinds:
-        text += f" ({', '.join(f'{count} {kind}' for kind, count in sorted(kinds.items()))})"
-    if answers["open"]:
-        text += f", {answers['open']} open"
-    against = sum(row.contradicts for row in rows)
-    return text + (f"; {against} not as claimed" if against else "")
 
 
 def _text(table: Table) -> str:

@@ -98,14 +98,28 @@ def fitting_manifest(files: Files) -> bytes:
     return json.dumps(manifest).encode()
 
 
+def evidence_in(files: Files) -> bytes:
+    """Return the text of the evidence, which a list of graphs has in a compressed file."""
+    if "evidence.jsonl.gz" in files:
+        return gzip.decompress(files["evidence.jsonl.gz"])
+    return files["evidence.jsonl"]
+
+
+def with_evidence(files: Files, text: bytes) -> Files:
+    """Return the files with another text as evidence, compressed if it was."""
+    if "evidence.jsonl.gz" in files:
+        return files | {"evidence.jsonl.gz": gzip.compress(text, mtime=0)}
+    return files | {"evidence.jsonl": text}
+
+
 def lines_of(files: Files) -> list[dict[str, Any]]:
-    return [json.loads(line) for line in files["evidence.jsonl"].splitlines()]
+    return [json.loads(line) for line in evidence_in(files).splitlines()]
 
 
 def with_lines(files: Files, records: list[Any]) -> Files:
     """Return the files with these records, in canonical form."""
     text = [json.dumps(item, sort_keys=True, separators=(",", ":")) for item in records]
-    return files | {"evidence.jsonl": "".join(line + "\n" for line in text).encode()}
+    return with_evidence(files, "".join(line + "\n" for line in text).encode())
 
 
 def repack(data: bytes, old: bytes, new: bytes) -> bytes:

@@ -11,6 +11,7 @@ import json
 import re
 import subprocess
 import sys
+import zlib
 from collections.abc import Callable
 from pathlib import Path
 from typing import Any
@@ -77,6 +78,15 @@ def with_list(name: str, data: bytes) -> Files:
 
 def with_evidence(data: bytes) -> Files:
     return claim_only(COMPLETE.format(n=4)) | {"evidence.jsonl": data}
+
+
+def with_packed(piece: bytes, times: int) -> Files:
+    """Return a folder whose packed evidence is a piece many times over."""
+    files = claim_only(COMPLETE.format(n=4))
+    del files["evidence.jsonl"]
+    packer = zlib.compressobj(9, wbits=31)
+    data = b"".join([packer.compress(piece) for _ in range(times)]) + packer.flush()
+    return files | {"evidence.jsonl.gz": data}
 
 
 HOSTILE: dict[str, tuple[Callable[[], Files], str]] = {
@@ -158,6 +168,9 @@ HOSTILE: dict[str, tuple[Callable[[], Files], str]] = {
         lambda: with_list("a.graphml", b"<graphml><desc>" + b"<a>" * 10**6), "not XML"
     ),
     "deep record": (lambda: with_evidence(b"[" * 2**22 + b"\n"), "too deeply"),
+    "packed, one long line": (lambda: with_packed(b" " * 2**20, 2**10), "gz:1: .*cut short"),
+    "packed, empty lines": (lambda: with_packed(b"\n" * 2**20, 2**10), "gz:2: a line too many"),
+    "packed, deep": (lambda: with_packed(b"[" * 2**20, 2**5), "gz:1: .*cut short"),
     "long line": (lambda: with_evidence(b" " * (2**26 + 9)), "cut short"),
 }  # fmt: skip
 

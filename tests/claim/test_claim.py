@@ -290,6 +290,7 @@ def hops(**changes: str) -> str:
         (LIST.replace("lists/", "a\\u0000"), [":3: [graph] list"]),
         (LIST.replace("lists/cubic-14.g6", ""), [":3: [graph] list"]),
         (LIST.replace("lists/cubic-14.g6", "evidence.jsonl"), [":3: [graph] list", "kept"]),
+        (LIST.replace("lists/cubic-14.g6", "evidence.jsonl.gz"), [":3: [graph] list", "kept"]),
         (LIST.replace("lists/", "clauses/"), [":3: [graph] list", "kept"]),
         (LIST.replace('"lists/cubic-14.g6"', "3"), [":3: [graph] list", "text"]),
         (LIST.replace(".g6", '.g6"\nformat = "grahp6'), [":4: [graph] format", "graph6"]),

@@ -5,7 +5,7 @@ from __future__ import annotations
 import re
 from pathlib import Path
 
-from tests.checker.folders import Files
+from tests.checker.folders import Files, evidence_in, read_files, with_evidence
 
 DEMOS = sorted(Path(__file__).parents[2].glob("proofs/*/manifest.json"))
 NAMES = [path.parent.name for path in DEMOS]
@@ -26,13 +26,13 @@ exists = "n <= 5"
 
 
 def lines_of(folder: Path) -> list[bytes]:
-    return (folder / "evidence.jsonl").read_bytes().splitlines()
+    return evidence_in(read_files(folder)).splitlines()
 
 
 def corrupt(files: Files) -> Files:
     """Return the files with a witness in which two vertices have changed places."""
-    lines = files["evidence.jsonl"]
+    lines = evidence_in(files)
     found = re.search(rb'"order":\[(\d+),(\d+)', lines)
     assert found is not None
     swapped = b'"order":[%s,%s' % (found[2], found[1])
-    return files | {"evidence.jsonl": lines.replace(found[0], swapped, 1)}
+    return with_evidence(files, lines.replace(found[0], swapped, 1))

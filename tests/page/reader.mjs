@@ -14,7 +14,7 @@ const bytes = (text) => new Uint8Array(Buffer.from(text, "base64"));
 const pairs = (graph) => Array.from(graph.low, (u, e) => [u, graph.high[e]]);
 
 function seenList(data, format) {
-  return readList(data, format).map((build) => {
+  return [...readList(data, format)].map((build) => {
     const { graph, names } = build();
     return [names, pairs(graph)];
   });
@@ -41,7 +41,7 @@ function seenClaim({ claim: text, files }) {
   } else {
     const { name, format } = claim.list;
     if (!(name in files)) throw new Rejected("no such file");
-    instances = readList(bytes(files[name]), format).map((build, i) => [[i + 1], build]);
+    instances = [...readList(bytes(files[name]), format)].map((build, i) => [[i + 1], build]);
   }
   const rows = instances.map(([values, build]) => {
     const { names, ...given } = build();

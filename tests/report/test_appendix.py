@@ -16,6 +16,7 @@ from certify.report.latex import set_latex_text, set_plain_text
 from certify.report.names import Name, read_name
 from certify.report.tex import escape_tex
 from certify.report.words import mark
+from tests.checker.folders import lines_of, read_files
 from tests.flow.conftest import Command, certify
 from tests.report import folders
 
@@ -152,8 +153,8 @@ def test_every_impossible_instance_has_a_proposition_with_a_proof(
     propositions = text.count(r"\begin{evidenceproposition}")
     theorems = text.count(r"\begin{evidencetheorem}")
     assert text.count(r"\begin{proof}") == propositions + theorems
-    lines = (proved[name] / "evidence.jsonl").read_text().splitlines()
-    impossible = sum(json.loads(line)["answer"] == "impossible" for line in lines)
+    lines = lines_of(read_files(proved[name]))
+    impossible = sum(line["answer"] == "impossible" for line in lines)
     assert (propositions > 0) == (impossible > 0)
     assert propositions <= impossible
 
@@ -173,10 +174,10 @@ def test_computations_are_pointed_to(proved: dict[str, Path]) -> None:
     digests = json.loads((proved["clauses"] / "manifest.json").read_text())["sha256"]
     plain = latex(proved["clauses"]).replace(r"\allowbreak ", "")
     assert all(digest in plain for digest in digests.values())
-    line = json.loads((proved["sweep"] / "evidence.jsonl").read_text().splitlines()[1])
+    line = lines_of(read_files(proved["sweep"]))[1]
     sweep = latex(proved["sweep"]).replace(r"\allowbreak ", "")
     assert line["evidence"]["digest"] in sweep
-    assert r"in line 2 of \texttt{evidence.jsonl}" in sweep
+    assert r"in line 2 of \texttt{evidence.jsonl.gz}" in sweep
     assert "For two instances the proof is a computation that only a machine repeats." in sweep
 
 

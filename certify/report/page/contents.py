@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import hashlib
 import json
+from collections.abc import Mapping
 from dataclasses import dataclass
 from html import escape
 from itertools import islice
@@ -15,8 +16,8 @@ from certify.claim.endless import row_of
 from certify.claim.instances import name_key
 from certify.claim.parts import Rule
 from certify.evidence.endless import exists_for
+from certify.evidence.lines import MANIFEST, PACKED, PLAIN, claim_name, read_evidence
 from certify.evidence.record import Record
-from certify.evidence.store import EVIDENCE, MANIFEST, claim_name
 from certify.graph.strip import read_strip
 from certify.report.blocks import Block, Paragraph, mark
 from certify.report.drawing import draw_reason
@@ -91,7 +92,7 @@ def read_contents(folder: Path) -> Contents:
     """
     claim = read_claim(folder / claim_name(folder))
     files = read_files(folder)
-    lines = files[EVIDENCE].splitlines()
+    lines = list(read_evidence(folder))
     if claim.growing is not None:
         return Contents(claim, tuple(_tell_settled(claim, line) for line in lines), files)
     told = list(islice(read_items(claim, folder), MOST_TOLD))
@@ -141,7 +142,7 @@ def _tell(item: Item, rule: Rule | None, files: dict[str, bytes], span: str | No
 def _point_to(item: Item, files: dict[str, bytes]) -> list[Block]:
     """Return where the evidence lies that only a machine reads."""
     kind, body = item.record["kind"], item.record["evidence"]
-    place = f"line {item.line} of {mark(f'`{EVIDENCE}`')}"
+    place = f"line {item.line} of {mark(f'`{_evidence_in(files)}`')}"
     if kind == "sweep":
         digest = mark(f"`{body['digest']}`")
         return [Paragraph(f"Its record is {place}; the SHA-256 of its states is {digest}.")]
@@ -152,6 +153,10 @@ def _point_to(item: Item, files: dict[str, bytes]) -> list[Block]:
         ]
         return [Paragraph(f"Its record is {place}, and its files are {'; '.join(said)}.")]
     return []
+
+
+def _evidence_in(files: Mapping[str, bytes]) -> str:
+    return PACKED if PACKED in files else PLAIN
 
 
 def _tell_settled(claim: Claim, line: bytes) -> Row:

@@ -12,16 +12,18 @@ import { Rejected, need, readJson, writeJson, exactly, decodeText } from "./stri
 import { Sha256 } from "./sha256.js";
 import { readClaim } from "./claims.js";
 import { buildByRule, buildInstance } from "./graphs.js";
-import { readList } from "./lists.js";
+import { readList, isOfLines } from "./lists.js";
+import { unpackPieces } from "./inflate.js";
 import { LeftOpen, readRecord, checkRecord } from "./records.js";
 import { checkEndless } from "./endless.js";
 
 const MANIFEST = "manifest.json";
 const EVIDENCE = "evidence.jsonl";
+const PACKED = "evidence.jsonl.gz";
+const KEPT = [MANIFEST, EVIDENCE, PACKED];
 const MOST_FILE = 2 ** 28;
-const MOST_EVIDENCE = 2 ** 32;
+const MOST_LARGE = 2 ** 32;
 const MOST_LINE = 2 ** 26;
-const MOST_INSTANCES = 100000;
 
 // Relative, with `/` between parts; all characters are printable, and none is `\` or `:`.
 function checkName(name) {
@@ -41,7 +43,9 @@ function readManifest(bytes) {
     checkName(name);
     need(typeof digest === "string" && /^[0-9a-f]{64}$/.test(digest), `${name}: not a SHA-256 digest`);
   }
-  need(claim !== EVIDENCE && claim !== MANIFEST && !digests.has(MANIFEST), "the files are not different ones");
+  need(!KEPT.includes(claim) && !digests.has(MANIFEST), "the files are not different ones");
+  // One file of evidence, so that no two readers read two different ones.
+  need(digests.has(EVIDENCE) !== digests.has(PACKED), `not one of ${EVIDENCE} and ${PACKED} is listed`);
   return { claim, digests };
 }
 
@@ -49,47 +53,91 @@ function readManifest(bytes) {
 class Files {
   constructor(read) {
     const { claim, digests } = readManifest(read(MANIFEST, MOST_LINE));
-    this.claim = claim;
-    this.contents = new Map();
-    this.used = new Set();
-    for (const [name, digest] of digests) {
-      const bytes = read(name, name === EVIDENCE ? MOST_EVIDENCE : MOST_FILE);
-      need(new Sha256().update(bytes).hex() === digest, `${name} has changed since the manifest was written`);
-      this.contents.set(name, bytes);
+    Object.assign(this, { claim, digests, read, contents: new Map(), used: new Set() });
+    this.evidence = digests.has(PACKED) ? PACKED : EVIDENCE;
+  }
+
+  take(name, most) {
+    if (this.contents.has(name)) return;
+    const bytes = this.read(name, most);
+    need(new Sha256().update(bytes).hex() === this.digests.get(name), `${name} has changed since the manifest was written`);
+    this.contents.set(name, bytes);
+  }
+
+  // Take all of them; `large` is the list, if it may be large.
+  takeAll(large) {
+    for (const name of this.digests.keys()) {
+      this.take(name, name === large || name === this.evidence ? MOST_LARGE : MOST_FILE);
     }
   }
 
   get(name) {
-    need(this.contents.has(name), `${name} is not listed in ${MANIFEST}`);
+    need(this.digests.has(name), `${name} is not listed in ${MANIFEST}`);
     this.used.add(name);
+    this.take(name, MOST_FILE);
     return this.contents.get(name);
   }
 
+  lines() {
+    const bytes = this.get(this.evidence);
+    return linesOf(this.evidence === PACKED ? unpackPieces(bytes, MOST_LARGE) : [bytes]);
+  }
+
   checkAllUsed() {
-    for (const name of this.contents.keys()) need(this.used.has(name), `${name} belongs to nothing`);
+    for (const name of this.digests.keys()) need(this.used.has(name), `${name} belongs to nothing`);
   }
 }
 
-// The lines of evidence.jsonl; a line without an end is handed out as null.
-function* linesOf(bytes) {
-  for (let at = 0; at < bytes.length; ) {
-    const end = bytes.indexOf(10, at);
-    yield end < 0 || end - at >= MOST_LINE ? null : bytes.subarray(at, end);
-    at = end < 0 ? bytes.length : end + 1;
+function join(parts) {
+  if (parts.length === 1) return parts[0];
+  const whole = new Uint8Array(parts.reduce((sum, part) => sum + part.length, 0));
+  let at = 0;
+  for (const part of parts) {
+    whole.set(part, at);
+    at += part.length;
   }
+  return whole;
 }
 
-// The instances: { name, key, values, build }; `name` is written as in a record.
-function listInstances(claim, files) {
+// The lines of a text that comes in pieces; a line without an end, or too long, is handed out as
+// null. Of a line too long nothing is kept.
+function* linesOf(pieces) {
+  let [parts, length] = [[], 0];
+  for (const piece of pieces) {
+    for (let at = 0; at < piece.length; ) {
+      const end = piece.indexOf(10, at);
+      const part = piece.subarray(at, end < 0 ? piece.length : end);
+      length += part.length;
+      parts = length < MOST_LINE ? [...parts, part] : [];
+      at += part.length + 1;
+      if (end >= 0) {
+        yield length < MOST_LINE ? join(parts) : null;
+        [parts, length] = [[], 0];
+      }
+    }
+  }
+  if (length > 0) yield null;
+}
+
+// The name of the claim's list, null if it has none.
+function listName(claim, files) {
+  if (claim.list === null) return null;
+  need(checkName(claim.list.name) !== files.claim && !KEPT.includes(claim.list.name), "the files are not different ones");
+  return claim.list.name;
+}
+
+// Yield the instances: { name, key, values, build }; `name` is written as in a record.
+function* listInstances(claim, files) {
   if (claim.list !== null) {
-    const { name, format } = claim.list;
-    need(checkName(name) !== files.claim && name !== EVIDENCE && name !== MANIFEST, "the files are not different ones");
-    const builders = readList(files.get(name), format);
-    need(builders.length <= MOST_INSTANCES, "more than 100,000 graphs");
-    return builders.map((build, i) => ({ name: i + 1, key: String(i + 1), values: [], build }));
+    let place = 0;
+    for (const build of readList(files.get(claim.list.name), claim.list.format)) {
+      place += 1;
+      yield { name: place, key: String(place), values: [], build };
+    }
+    return;
   }
   const growing = claim.endless?.growing;
-  return claim.rows.map((values) => {
+  yield* claim.rows.map((values) => {
     const text = (parameter, i) => (parameter === growing ? `${values[i]}..` : values[i]);
     const name = new Map(claim.parameters.map((parameter, i) => [parameter, text(parameter, i)]));
     const sorted = [...claim.parameters].sort().map((parameter) => `${parameter}=${name.get(parameter)}`);
@@ -130,10 +178,12 @@ async function* checkFolder(read) {
   try {
     const files = new Files(read);
     const claim = readClaim(files.get(files.claim));
-    const instances = listInstances(claim, files);
-    sums.instances = instances.length;
-    const lines = linesOf(files.get(EVIDENCE));
-    for (const instance of instances) {
+    files.takeAll(claim.list !== null && isOfLines(claim.list.format) ? listName(claim, files) : null);
+    listName(claim, files);
+    const lines = files.lines();
+    sums.instances = claim.rows?.length ?? 0;
+    for (const instance of listInstances(claim, files)) {
+      if (claim.list !== null) sums.instances += 1;
       const { open = false, ...item } = checkInstance(instance, lines.next().value, claim, files);
       if (item.verdict === "accepted") {
         sums.accepted += 1;
@@ -141,7 +191,7 @@ async function* checkFolder(read) {
       } else onlyOpen &&= open;
       yield item;
     }
-    need(lines.next().done, `${EVIDENCE}: a line too many`);
+    need(lines.next().done, `${files.evidence}: a line too many`);
     const rest = sums.accepted < sums.instances ? "an instance is not accepted" : null;
     if (rest === null || onlyOpen) files.checkAllUsed();
     if (rest !== null) throw onlyOpen ? new LeftOpen(rest) : new Rejected(rest);

@@ -3,6 +3,8 @@
 
 import { need } from "./strict.js";
 
+const MOST_LINE = 2 ** 26;
+
 // The six-bit numbers of a line.
 function sextets(bytes, what) {
   return Array.from(bytes, (byte) => {
@@ -78,25 +80,25 @@ function withoutHead(bytes) {
   return bytes;
 }
 
-// Read all graphs of a file: a list of { n, codes }.
-function readGraph6(bytes) {
+// Yield the graphs of a file, one after the other: { n, codes }.
+function* readGraph6(bytes) {
   const rest = withoutHead(bytes);
-  const graphs = [];
+  let count = 0;
   for (let at = 0; at < rest.length; ) {
-    const what = `graph ${graphs.length + 1}`;
-    need(graphs.length < 100000, "more than 100,000 graphs");
+    count += 1;
+    const what = `graph ${count}`;
     const end = rest.indexOf(10, at);
     const whole = end >= 0;
+    need((whole ? end : rest.length) - at < MOST_LINE, `${what}: the line is too long`);
     let line = rest.subarray(at, whole ? end : rest.length);
     if (whole && line[line.length - 1] === 13) line = line.subarray(0, -1);
     need(line.length > 0, `${what}: an empty line`);
     const sparse = line[0] === 58;
     // Only the length of graph6 shows that a line without an end is whole.
     need(whole || !sparse, `${what}: the line has no end`);
-    graphs.push(sparse ? readSparse(line, what) : readDense(line, what));
+    yield sparse ? readSparse(line, what) : readDense(line, what);
     at = whole ? end + 1 : rest.length;
   }
-  return graphs;
 }
 
 export { readGraph6 };

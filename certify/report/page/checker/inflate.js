@@ -11,10 +11,11 @@ const CRC = Uint32Array.from({ length: 256 }, (_, byte) => {
   return rest;
 });
 
-function crc32(bytes) {
-  let rest = 0xffffffff;
+// The check sum of bytes that follow those of the check sum `before`.
+function crc32(bytes, before = 0) {
+  let rest = ~before;
   for (let i = 0; i < bytes.length; i += 1) rest = CRC[(rest ^ bytes[i]) & 255] ^ (rest >>> 8);
-  return (rest ^ 0xffffffff) >>> 0;
+  return ~rest >>> 0;
 }
 
 // Lengths and distances (RFC 1951, section 3.2.5): the first value of each symbol and the
@@ -58,9 +59,29 @@ const FIXED = [
   buildCode(new Array(32).fill(5), false),
 ];
 
+// How far back a distance reaches, how much is handed out at once, and the longest copy.
+const WINDOW = 2 ** 15;
+const PIECE = 2 ** 18;
+const LONGEST = 258;
+
 class Inflater {
-  constructor(bytes, at, end, size) {
-    Object.assign(this, { bytes, at, end, hold: 0, held: 0, made: 0, out: new Uint8Array(size) });
+  constructor(bytes, at, end) {
+    // `out` begins with what distances still reach; from `fresh` on nothing was handed out.
+    const out = new Uint8Array(WINDOW + PIECE + LONGEST);
+    Object.assign(this, { bytes, at, end, hold: 0, held: 0, made: 0, fresh: 0, out });
+  }
+
+  isFull() {
+    return this.made + LONGEST > this.out.length;
+  }
+
+  // Hand out what is new, and keep what distances reach.
+  take() {
+    const piece = this.out.slice(this.fresh, this.made);
+    const kept = Math.min(WINDOW, this.made);
+    this.out.copyWithin(0, this.made - kept, this.made);
+    this.made = this.fresh = kept;
+    return piece;
   }
 
   bits(count) {
@@ -89,17 +110,19 @@ class Inflater {
     need(false, "gzip: not a word of the code");
   }
 
-  put(byte) {
-    need(this.made < this.out.length, "gzip: longer than it says");
-    this.out[this.made++] = byte;
-  }
-
-  stored() {
+  // The rest of a block that is not compressed is `left` bytes long.
+  storedLength() {
     [this.hold, this.held] = [0, 0];
     const [length, check] = [this.bits(16), this.bits(16)];
     need(length === (~check & 0xffff), "gzip: a broken length");
     need(this.at + length <= this.end, "gzip: cut short");
-    for (let i = 0; i < length; i += 1) this.put(this.bytes[this.at++]);
+    this.left = length;
+  }
+
+  // Go on with the block until it ends (true) or `out` is full (false).
+  stored() {
+    for (; this.left > 0 && !this.isFull(); this.left -= 1) this.out[this.made++] = this.bytes[this.at++];
+    return this.left === 0;
   }
 
   codes() {
@@ -125,10 +148,10 @@ class Inflater {
   }
 
   compressed([literal, distance]) {
-    for (;;) {
+    while (!this.isFull()) {
       const symbol = this.symbol(literal);
-      if (symbol < 256) this.put(symbol);
-      else if (symbol === 256) return;
+      if (symbol < 256) this.out[this.made++] = symbol;
+      else if (symbol === 256) return true;
       else {
         need(symbol < 286, "gzip: an unknown length");
         const length = LENGTH_FIRST[symbol - 257] + this.bits(LENGTH_BITS[symbol - 257]);
@@ -136,23 +159,24 @@ class Inflater {
         need(far < 30, "gzip: an unknown distance");
         const back = DISTANCE_FIRST[far] + this.bits(DISTANCE_BITS[far]);
         need(back <= this.made, "gzip: a distance before the start");
-        for (let i = 0; i < length; i += 1) this.put(this.out[this.made - back]);
+        for (let i = 0; i < length; i += 1, this.made += 1) this.out[this.made] = this.out[this.made - back];
       }
     }
+    return false;
   }
 
-  run() {
+  *pieces() {
     let last = 0;
     while (!last) {
       last = this.bits(1);
       const kind = this.bits(2);
       need(kind < 3, "gzip: an unknown block");
-      if (kind === 0) this.stored();
-      else this.compressed(kind === 1 ? FIXED : this.codes());
+      if (kind === 0) this.storedLength();
+      const codes = kind === 2 ? this.codes() : FIXED;
+      while (!(kind === 0 ? this.stored() : this.compressed(codes))) yield this.take();
     }
-    need(this.made === this.out.length, "gzip: shorter than it says");
     need(this.at === this.end, "gzip: something follows the member");
-    return this.out;
+    yield this.take();
   }
 }
 
@@ -180,16 +204,32 @@ function headerEnd(bytes) {
   return at;
 }
 
-// Return the bytes in a gzip file of one member, at most `limit` of them.
-function gunzip(bytes, limit) {
+// Yield the bytes in a gzip file of one member, at most `limit` of them, piece by piece. That the
+// member is whole, and its check sum right, is known only when the last piece was asked for.
+function* unpackPieces(bytes, limit) {
   const start = headerEnd(bytes);
   const end = bytes.length - 8;
-  const size = little(bytes, end + 4);
-  // Deflate makes at most 1,032 bytes of one, so a false size costs no memory.
-  need(size <= limit && size <= 1032 * bytes.length, "gzip: the contents are too long");
-  const out = new Inflater(bytes, start, end, size).run();
-  need(crc32(out) === little(bytes, end), "gzip: the check sum is another");
+  let [size, sum] = [0, 0];
+  for (const piece of new Inflater(bytes, start, end).pieces()) {
+    size += piece.length;
+    sum = crc32(piece, sum);
+    need(size <= limit, "gzip: the contents are too long");
+    yield piece;
+  }
+  need(size % 2 ** 32 === little(bytes, end + 4), "gzip: the length is another");
+  need(sum === little(bytes, end), "gzip: the check sum is another");
+}
+
+// Return the bytes in a gzip file of one member, at most `limit` of them.
+function gunzip(bytes, limit) {
+  const pieces = [...unpackPieces(bytes, limit)];
+  const out = new Uint8Array(pieces.reduce((sum, piece) => sum + piece.length, 0));
+  let at = 0;
+  for (const piece of pieces) {
+    out.set(piece, at);
+    at += piece.length;
+  }
   return out;
 }
 
-export { gunzip };
+export { gunzip, unpackPieces };

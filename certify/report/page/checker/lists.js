@@ -8,6 +8,7 @@ import { readXml } from "./xml.js";
 
 const GRAPHML = "http://graphml.graphdrawing.org/xmlns";
 const MOST_EDGES = 2 ** 23;
+const MOST_GRAPHS = 10000000;
 
 // What each element may hold; nothing else may be there.
 const HOLDS = {
@@ -58,21 +59,27 @@ function readGraphml(text) {
   return { n, codes, names: [...numbers.keys()] };
 }
 
-// Read a file into functions that make { graph, names }, one for each graph in it.
-function readList(bytes, format) {
-  let found;
-  if (format === "graph6" || format === "sparse6") found = readGraph6(bytes);
-  else {
-    const text = decodeText(bytes, "the list");
-    const read = { dimacs: readDimacs, edges: readEdges, graphml: readGraphml }[format];
-    found = [read(text)];
-  }
-  need(found.length > 0, "the list holds no graph");
-  return found.map(({ n, codes, names }) => () => {
-    const graph = new Graph(n, codes);
-    need(graph.m <= MOST_EDGES, "more than 2^23 edges");
-    return { graph, names: names ?? Array.from({ length: n }, (_, v) => String(v)) };
-  });
+function readOne(bytes, format) {
+  const text = decodeText(bytes, "the list");
+  return { dimacs: readDimacs, edges: readEdges, graphml: readGraphml }[format](text);
 }
 
-export { readList };
+// In these every line is a graph, and only they may be large.
+const isOfLines = (format) => format === "graph6" || format === "sparse6";
+
+// Yield for each graph in a file a function that makes { graph, names }, one after the other.
+function* readList(bytes, format) {
+  let count = 0;
+  for (const { n, codes, names } of isOfLines(format) ? readGraph6(bytes) : [readOne(bytes, format)]) {
+    count += 1;
+    need(count <= MOST_GRAPHS, "more than 10,000,000 graphs");
+    yield () => {
+      const graph = new Graph(n, codes);
+      need(graph.m <= MOST_EDGES, "more than 2^23 edges");
+      return { graph, names: names ?? Array.from({ length: n }, (_, v) => String(v)) };
+    };
+  }
+  need(count > 0, "the list holds no graph");
+}
+
+export { readList, isOfLines };
