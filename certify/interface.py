@@ -13,8 +13,7 @@ from certify.checker import FolderCheck, check_folder
 from certify.claim.endless import endless_key, find_row
 from certify.claim.instances import name_key
 from certify.errors import InputError
-from certify.flow import Outcome, decide_instance, find_outcome, prove, read_stored_claim
-from certify.graph.build import Instance
+from certify.flow import Outcome, decide_graph, find_outcome, prove, read_stored_claim
 from certify.graph.graph import Graph, edge_between
 from certify.graph.question import BUILDERS
 from certify.graph.strip import read_strip
@@ -62,17 +61,16 @@ def decide(graph: networkx.Graph, structure: str, *, budget: float = Limits.seco
     source.add_nodes_from(range(len(nodes)))
     source.add_edges_from(edges)
     text = networkx.to_graph6_bytes(source, header=False)
-    names = tuple(map(str, nodes))
-    instance = Instance(1, Graph(names, tuple(edges)), text)
-    outcome = decide_instance(instance, structure, "graph6", limits=Limits(seconds=budget))
-    return _decision(outcome, nodes)
+    outcome = decide_graph(text, structure, "graph6", limits=Limits(seconds=budget))
+    named = Graph(tuple(map(str, nodes)), tuple(edges))
+    return _decision(outcome, named, structure, nodes)
 
 
-def _decision(outcome: Outcome, nodes: list[Hashable]) -> Decision:
+def _decision(outcome: Outcome, graph: Graph, structure: str, nodes: list[Hashable]) -> Decision:
     record = outcome.record
     order = record.evidence.get("order") if record.answer == "exists" else None
     witness = tuple(nodes[v] for v in order) if order is not None else None
-    reason = render_reason(outcome.graph, outcome.question, record.content)
+    reason = render_reason(graph, BUILDERS[structure](graph), record.content)
     return Decision(record.answer, record.kind, witness, reason, record.evidence)
 
 

@@ -17,6 +17,7 @@ sys.path.insert(0, str(Path(__file__).resolve().parents[1]))
 
 from rich.console import Console
 
+from benchmark import lists
 from benchmark.instance import CORE, HARD, Instance
 from benchmark.measure import Limits, Row, measure
 from benchmark.suite import build_suite
@@ -26,7 +27,9 @@ from benchmark.table import TITLES, render, to_json
 def read_arguments(words: Sequence[str] | None) -> argparse.Namespace:
     """Read the command line."""
     parser = argparse.ArgumentParser(
-        prog="bench", description="Measure methods side by side on the public suite."
+        prog="bench",
+        description="Measure methods side by side on the public suite.",
+        epilog="bench lists --help: measure long lists of graphs, by jobs and by length.",
     )
     families = list(dict.fromkeys(instance.family for instance in build_suite()))
     parser.add_argument(
@@ -93,6 +96,9 @@ def write_json(path: Path, content: dict[str, Any]) -> None:
 
 def main(words: Sequence[str] | None = None) -> int:
     """Run the benchmark; return 1 when answers disagree or a method crashed, 2 for bad usage."""
+    words = sys.argv[1:] if words is None else words
+    if words[:1] == ["lists"]:
+        return lists.main(words[1:])
     arguments = read_arguments(words)
     console, progress = Console(), Console(stderr=True)
     instances = select(arguments)

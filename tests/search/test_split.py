@@ -16,7 +16,7 @@ from certify.evidence.witness import Witness
 from certify.graph.question import Question
 from certify.search.ladder import Limits
 from certify.search.split import Part, join_parts, settle_part, split_question
-from tests.brute import cycle_edges, has_cycle, hamiltonian_cycles, questions
+from tests.brute import cycle_edges, hamiltonian_cycles, has_cycle, questions
 from tests.search.known_graphs import IMPOSSIBLE, POSSIBLE, build
 from tests.search.test_clauses import CALM, check_evidence
 

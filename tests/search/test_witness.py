@@ -16,7 +16,12 @@ from certify.graph.question import Ends, Question, build_cycle_question, build_p
 from certify.search.budget import Budget
 from certify.search.merging import find_by_merging
 from certify.search.rotation import find_by_rotation
-from certify.search.witness import find_witness, is_cycle, write_witness
+from certify.search.witness import (
+    find_witness,
+    glance_for_witness,
+    is_cycle,
+    write_witness,
+)
 from tests.brute import has_cycle, questions
 from tests.search.known_graphs import IMPOSSIBLE, POSSIBLE, build, knight, petersen, squares
 
@@ -57,6 +62,20 @@ def test_a_cycle_is_found_exactly_where_there_is_one(question: Question) -> None
     cycle = find(question)
     assert (cycle is not None) == has_cycle(question)
     assert cycle is None or is_hamiltonian(question, cycle)
+
+
+@given(questions())
+def test_a_glance_finds_what_the_whole_search_finds_or_nothing(question: Question) -> None:
+    """So that evidence does not depend on whether a glance was taken first."""
+    seen = glance_for_witness(question, budget=Budget.of(MINUTE))
+    assert seen is None or seen == find(question)
+
+
+def test_a_glance_finds_most_cycles_of_cubic_graphs() -> None:
+    graphs = [nx.random_regular_graph(3, 16, seed=seed) for seed in range(40)]
+    built = [build(16, [edge_between(*edge) for edge in graph.edges]) for graph in graphs]
+    seen = [glance_for_witness(question, budget=Budget.of(MINUTE)) for question in built]
+    assert sum(cycle is not None for cycle in seen) > 30
 
 
 @given(path_questions())
