@@ -35,10 +35,36 @@ def test_nothing_imports_backwards() -> None:
     for place, folder in enumerate(FLOW):
         later = {f"certify.{name}" for name in FLOW[place + 1 :]}
         top = {"certify.flow", "certify.commands", "certify.interface"}
+        top |= {"certify.guard", "certify.recheck"}
         for path in files(folder):
             for name in imported(path):
                 parts = ".".join(name.split(".")[:2])
                 assert parts not in later | top, f"{path} imports {name}"
+
+
+def test_the_engine_knows_nothing_of_what_it_runs() -> None:
+    assert files("engine")
+    for path in files("engine"):
+        ours = {name for name in imported(path) if name.split(".")[0] == "certify"}
+        assert all(name == "certify.errors" or name.startswith("certify.engine.") for name in ours)
+
+
+def test_the_search_knows_nothing_of_where_it_runs() -> None:
+    for folder in (*FLOW, "checker"):
+        for path in files(folder):
+            assert not {name for name in imported(path) if name.startswith("certify.engine")}, path
+
+
+def test_the_guard_leans_on_little() -> None:
+    """What people trust in CI needs the checker, the reader of claims, and files."""
+    allowed = {"certify.checker", "certify.errors", "certify.evidence.disk"}
+    outside = {"filelock", "pytest"}
+    assert files("guard")
+    for path in files("guard"):
+        for name in imported(path):
+            own = ".".join(name.split(".")[:2]) in ("certify.guard", "certify.claim")
+            known = name.split(".")[0] in sys.stdlib_module_names | outside
+            assert own or known or name in allowed | {"certify"}, f"{path} imports {name}"
 
 
 def test_the_checker_imports_the_standard_library_and_itself_alone() -> None:
