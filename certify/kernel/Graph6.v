@@ -1,57 +1,13 @@
-(** * Graphs that are written out: graph6, or a list of edges
+(** * Graphs written as graph6 or sparse6 (formats.txt of nauty)
 
-    The vertices are 0, ..., n - 1. *)
+    The vertices are 0, ..., n - 1. A reader who does not want to believe this file
+    can take the edges written out instead (EdgeGraph.v). *)
 
-From Coq Require Import Bool List ZArith Ascii String FMapPositive.
-From Certify Require Import Statement Rules.
+From Coq Require Import Bool List ZArith Ascii String.
+From Certify Require Import Statement Rules EdgeGraph.
 Import ListNotations.
 Open Scope Z_scope.
 Open Scope lazy_bool_scope.
-
-(** ** Edges that are listed *)
-
-(** Edges are looked up by their first vertex. Which edges share a place in the map does
-    not matter: both vertices are compared. *)
-Definition shelf (u : Z) : positive := Z.to_pos (u + 1).
-
-Definition shelve (edges : list (Z * Z)) : PositiveMap.t (list (Z * Z)) :=
-  fold_right
-    (fun e m =>
-       let i := shelf (fst e) in
-       match PositiveMap.find i m with
-       | Some l => PositiveMap.add i (e :: l) m
-       | None => PositiveMap.add i [e] m
-       end)
-    (PositiveMap.empty _) edges.
-
-Fixpoint listed (u v : Z) (edges : list (Z * Z)) : bool :=
-  match edges with
-  | [] => false
-  | e :: l => ((u =? fst e) &&& (v =? snd e)) ||| listed u v l
-  end.
-
-Definition shelved (m : PositiveMap.t (list (Z * Z))) (u v : Z) : bool :=
-  match PositiveMap.find (shelf u) m with
-  | Some l => listed u v l
-  | None => false
-  end.
-
-(** [joins edges u v]: (u, v) or (v, u) is in the list ([joins_spec]). *)
-Definition joins (edges : list (Z * Z)) : Z -> Z -> bool :=
-  let m := shelve edges in fun u v => shelved m u v ||| shelved m v u.
-
-Definition edge_graph (n : Z) (edges : list (Z * Z)) : query Z :=
-  {| vertices := range 0 (n - 1);
-     adjacent := joins edges;
-     ends := []; required := []; forbidden := [] |}.
-
-(** The same graph, with demands. *)
-Definition demand (Q : query Z) (ends : list Z) (required forbidden : list (Z * Z)) : query Z :=
-  {| vertices := vertices Q;
-     adjacent := adjacent Q;
-     ends := ends; required := required; forbidden := forbidden |}.
-
-(** ** graph6 (formats.txt of nauty) *)
 
 (** Each character stands for six bits: its code less 63, the highest bit first. *)
 Definition six_bits (c : ascii) : option (list bool) :=
@@ -103,55 +59,74 @@ Fixpoint read_pairs (n u v : Z) (bits : list bool) : option (list (Z * Z)) :=
         if b then option_map (cons (u, v)) rest else rest
   end.
 
-Definition read_graph6 (s : string) : option (Z * list (Z * Z)) :=
-  match read_bits s with
+Definition read_graph6 (bits : list bool) : option (Z * list (Z * Z)) :=
+  match read_size bits with
+  | Some (n, rest) => option_map (pair n) (read_pairs n 0 1 rest)
   | None => None
-  | Some bits =>
-      match read_size bits with
-      | None => None
-      | Some (n, rest) => option_map (pair n) (read_pairs n 0 1 rest)
-      end
   end.
 
-(** A text that is not graph6 stands for no graph; a theorem about [graph6 s] says
-    [is_graph6 s = true] as well. *)
+(** sparse6 moves a mark [v] up, and notes edges below it. Each move is a bit, which says
+    whether [v] goes one up, and a number [x] of [k] bits: a larger [x] is the new mark,
+    a smaller one is joined to it. What is read are the edges and the bits that follow the
+    last of them. [fuel]: there are no more moves than bits. *)
+Fixpoint read_moves (fuel : nat) (n : Z) (k : nat) (v : Z) (bits after : list bool)
+  : list (Z * Z) * list bool :=
+  match fuel, bits with
+  | S fuel', b :: bits' =>
+      match number_of k bits' 0 with
+      | Some (x, rest) =>
+          let v' := v + Z.b2z b in
+          if (v' <? n) &&& (x <? n) then
+            if v' <? x then read_moves fuel' n k x rest after
+            else let '(edges, after') := read_moves fuel' n k v' rest rest in
+                 ((x, v') :: edges, after')
+          else ([], after)
+      | None => ([], after)
+      end
+  | _, _ => ([], after)
+  end.
+
+(** The bits after the last edge: at most five, all ones, but for a zero before them
+    where ones alone could be a move. *)
+Definition filled (n : Z) (k : nat) (after : list bool) : bool :=
+  let ones := match after with
+              | false :: more =>
+                  if (n =? 2 ^ Z.of_nat k) &&& Nat.leb k (List.length more) then more else after
+              | _ => after
+              end in
+  Nat.leb (List.length after) 5 &&& forallb id ones.
+
+Definition read_sparse6 (bits : list bool) : option (Z * list (Z * Z)) :=
+  match read_size bits with
+  | Some (n, rest) =>
+      if n <=? 1 then match rest with [] => Some (n, []) | _ => None end
+      else
+        let k := Z.to_nat (Z.log2 (n - 1) + 1) in
+        let '(edges, after) := read_moves (List.length rest) n k 0 rest rest in
+        if filled n k after &&& forallb (fun e => negb (fst e =? snd e)) edges
+        then Some (n, edges) else None
+  | None => None
+  end.
+
+(** A text that begins with a colon is sparse6. *)
+Definition read_line (s : string) : option (Z * list (Z * Z)) :=
+  match s with
+  | String ":" s' => match read_bits s' with Some bits => read_sparse6 bits | None => None end
+  | _ => match read_bits s with Some bits => read_graph6 bits | None => None end
+  end.
+
 Definition is_graph6 (s : string) : bool :=
-  match read_graph6 s with
+  match read_line s with
   | Some _ => true
   | None => false
   end.
 
-Definition graph6 (s : string) : query Z :=
-  match read_graph6 s with
+(** The graph of a text that is one. A text that is neither graph6 nor sparse6 has no graph,
+    so a proof that it is one is asked for, and [graph6 "..."] makes it, by computing. *)
+Definition graph_of (s : string) (fine : is_graph6 s = true) : query Z :=
+  match read_line s with
   | Some (n, edges) => edge_graph n edges
   | None => edge_graph 0 []
   end.
 
-(** ** What [joins] means *)
-
-Lemma listed_spec : forall u v l, listed u v l = true <-> In (u, v) l.
-Proof.
-  intros u v l. induction l as [|[x y] l IH]; simpl; [intuition discriminate|].
-  rewrite <- andb_lazy_alt, <- orb_lazy_alt, orb_true_iff, andb_true_iff, !Z.eqb_eq, IH.
-  intuition congruence.
-Qed.
-
-Lemma shelved_spec : forall edges u v, shelved (shelve edges) u v = true <-> In (u, v) edges.
-Proof.
-  intros edges u v. unfold shelved. induction edges as [|[x y] edges IH]; simpl.
-  - rewrite PositiveMap.gempty. intuition discriminate.
-  - rewrite <- IH. clear IH.
-    destruct (Pos.eq_dec (shelf u) (shelf x)) as [Heq|Hother].
-    + rewrite Heq. destruct (PositiveMap.find (shelf x) (shelve edges)) as [l|];
-        rewrite PositiveMap.gss, !listed_spec; simpl; intuition (congruence || discriminate).
-    + assert (u <> x) by congruence.
-      destruct (PositiveMap.find (shelf x) (shelve edges)) as [l|];
-        rewrite PositiveMap.gso by assumption; intuition congruence.
-Qed.
-
-Lemma joins_spec : forall edges u v,
-  joins edges u v = true <-> In (u, v) edges \/ In (v, u) edges.
-Proof.
-  intros edges u v. unfold joins.
-  now rewrite <- orb_lazy_alt, orb_true_iff, !shelved_spec.
-Qed.
+Notation graph6 s := (graph_of s ltac:(vm_cast_no_check (eq_refl true))) (only parsing).

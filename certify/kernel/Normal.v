@@ -5,7 +5,7 @@
     edges are computed here, from the rule, so no list of edges has to be believed. *)
 
 From Coq Require Import Bool List PArith ZArith.
-From Certify Require Import Statement Question.
+From Certify Require Import Statement Question Edges.
 Import ListNotations.
 Open Scope lazy_bool_scope.
 
@@ -57,10 +57,10 @@ Fixpoint holds {A : Type} (test : A -> bool) (l : list A) : bool :=
   | x :: l' => test x ||| holds test l'
   end.
 
-Fixpoint distinct (l : list V) : bool :=
+Fixpoint no_repeats (l : list V) : bool :=
   match l with
   | [] => true
-  | v :: l' => negb (holds (same v) l') &&& distinct l'
+  | v :: l' => negb (holds (same v) l') &&& no_repeats l'
   end.
 
 (** [edge], computed. *)
@@ -93,9 +93,6 @@ Fixpoint rows (close : vertex -> V -> list (vertex * vertex) -> list (vertex * v
 Definition place (u : V) : option vertex :=
   option_map fst (find (fun p => same u (snd p)) numbered).
 
-Definition ordered (i j : vertex) : vertex * vertex :=
-  if (i <? j)%positive then (i, j) else (j, i).
-
 Fixpoint collect {A B : Type} (f : A -> option B) (l : list A) : option (list B) :=
   match l with
   | [] => Some []
@@ -108,7 +105,7 @@ Fixpoint collect {A B : Type} (f : A -> option B) (l : list A) : option (list B)
 
 Definition place_pair (e : V * V) : option (vertex * vertex) :=
   match place (fst e), place (snd e) with
-  | Some i, Some j => Some (ordered i j)
+  | Some i, Some j => Some (ordered (i, j))
   | _, _ => None
   end.
 
@@ -120,7 +117,7 @@ Definition ask (n : nat) (all wanted : list (vertex * vertex)) : outcome :=
   else Missing.
 
 Definition normal_cycle : outcome :=
-  if distinct (vertices Q) then
+  if no_repeats (vertices Q) then
     match collect place_pair (required Q) with
     | Some wanted => ask (length (vertices Q)) (rows (fun _ _ more => more) numbered) wanted
     | None => Missing
@@ -140,7 +137,7 @@ Definition join_apex (apex i : vertex) (u : V) (more : list (vertex * vertex)) :
 Definition normal_path : outcome :=
   let n := length (vertices Q) in
   let apex := Pos.of_succ_nat n in
-  if distinct (vertices Q) then
+  if no_repeats (vertices Q) then
     match collect place_pair (required Q), collect place (ends Q) with
     | Some wanted, Some tips =>
         match ask (S n) (rows (join_apex apex) numbered)

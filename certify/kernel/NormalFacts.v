@@ -4,27 +4,13 @@
     the question, and what becomes of a path or cycle whose vertices are numbered. *)
 
 From Coq Require Import Bool List Permutation PArith Arith Lia.
-From Certify Require Import Statement Question Normal.
+From Certify Require Import Statement Steps Question Edges Normal.
 Import ListNotations.
 Open Scope lazy_bool_scope.
 
 (** ** Steps of paths and cycles *)
 
-Definition on_both {A B : Type} (f : A -> B) (e : A * A) : B * B := (f (fst e), f (snd e)).
-
-Lemma path_steps_map : forall (A B : Type) (f : A -> B) (h : list A),
-  path_steps (map f h) = map (on_both f) (path_steps h).
-Proof.
-  intros A B f h. induction h as [|u [|v h] IH]; [reflexivity..|].
-  cbn [map path_steps] in *. now rewrite IH.
-Qed.
-
-Lemma cycle_steps_map : forall (A B : Type) (f : A -> B) (h : list A),
-  cycle_steps (map f h) = map (on_both f) (cycle_steps h).
-Proof.
-  intros A B f [|u h]; [reflexivity|]. unfold cycle_steps.
-  rewrite <- path_steps_map, map_app. reflexivity.
-Qed.
+Notation on_both f := (fun e => (f (fst e), f (snd e))).
 
 Lemma path_steps_split : forall (A : Type) (h : list A) u v,
   In (u, v) (path_steps h) -> exists before after, h = before ++ u :: v :: after.
@@ -36,20 +22,13 @@ Proof.
     now rewrite Heq.
 Qed.
 
-Lemma path_steps_snoc : forall (A : Type) (h : list A) x y,
-  path_steps (h ++ [x; y]) = path_steps (h ++ [x]) ++ [(x, y)].
-Proof.
-  intros A h x y. induction h as [|u [|v h] IH]; [reflexivity..|].
-  cbn [app path_steps] in *. now rewrite IH.
-Qed.
-
 (** The last step of a cycle goes from its last vertex to its first. *)
 Lemma cycle_steps_close : forall (A : Type) first rest (most : list A) final,
   first :: rest = most ++ [final] ->
   cycle_steps (first :: rest) = path_steps (first :: rest) ++ [(final, first)].
 Proof.
   intros A first rest most final Heq. unfold cycle_steps.
-  rewrite Heq, <- app_assoc. apply path_steps_snoc.
+  rewrite Heq, <- app_assoc. apply (path_steps_app most final [first]).
 Qed.
 
 Lemma path_steps_differ : forall (A : Type) (h : list A) u v,
@@ -61,17 +40,10 @@ Proof.
 Qed.
 
 Lemma cycle_steps_differ : forall (A : Type) (h : list A) u v,
-  NoDup h -> 2 <= length h -> In (u, v) (cycle_steps h) -> In u h /\ In v h /\ u <> v.
+  NoDup h -> 3 <= length h -> In (u, v) (cycle_steps h) -> In u h /\ In v h /\ u <> v.
 Proof.
-  intros A [|x [|y h]] u v Hdup Hlen; simpl in Hlen; try lia.
-  destruct (exists_last (l := x :: y :: h)) as (most & final & Hlast); [discriminate|].
-  rewrite (cycle_steps_close A x (y :: h) most final Hlast), in_app_iff.
-  intros [Hin | [Heq | []]].
-  - now apply path_steps_differ.
-  - injection Heq as <- <-. destruct most as [|z most]; [discriminate|].
-    injection Hlast as <- Hlast. rewrite Hlast in *. simpl.
-    rewrite in_app_iff. simpl. repeat split; auto. intros ->.
-    inversion Hdup as [|? ? Hnot]. apply Hnot. rewrite in_app_iff. simpl. auto.
+  intros A h u v Hdup Hlen Hin. repeat split; try apply (cycle_steps_in h u v Hin).
+  intros ->. now apply (one_way h v v Hdup Hlen).
 Qed.
 
 (** ** Lists *)
@@ -81,12 +53,6 @@ Lemma holds_spec : forall (A : Type) (test : A -> bool) l,
 Proof.
   intros A test l. rewrite <- existsb_exists. induction l as [|x l IH]; simpl; [tauto|].
   now rewrite <- orb_lazy_alt, !orb_true_iff, IH.
-Qed.
-
-Lemma pair_eqb_spec : forall e f, pair_eqb e f = true <-> e = f.
-Proof.
-  intros [a b] [c d]. unfold pair_eqb. simpl.
-  rewrite andb_true_iff, !Pos.eqb_eq. intuition congruence.
 Qed.
 
 Lemma holds_same : forall (A : Type) (name : Named A) (x : A) l,
@@ -121,13 +87,14 @@ Proof.
   destruct (IH eq_refl) as (x' & Hin & Hf). eauto.
 Qed.
 
-Lemma ordered_either : forall i j, ordered i j = (i, j) \/ ordered i j = (j, i).
-Proof. intros. unfold ordered. destruct (i <? j)%positive; auto. Qed.
+Lemma ordered_either : forall i j, ordered (i, j) = (i, j) \/ ordered (i, j) = (j, i).
+Proof. intros i j. destruct (ordered_cases i j); tauto. Qed.
 
-Lemma ordered_sym : forall i j, i <> j -> ordered i j = ordered j i.
+Lemma ordered_sym : forall i j, i <> j -> ordered (i, j) = ordered (j, i).
 Proof.
-  intros i j Hij. unfold ordered.
-  destruct (Pos.ltb_spec i j), (Pos.ltb_spec j i); try reflexivity; lia.
+  intros i j Hij.
+  destruct (ordered_cases i j) as [[Hless ->] | [Hless ->]],
+    (ordered_cases j i) as [[Hmore ->] | [Hmore ->]]; reflexivity || lia.
 Qed.
 
 (** ** Numbers of vertices *)
@@ -154,19 +121,6 @@ Proof.
   - specialize (IH _ _ _ Hin). lia.
 Qed.
 
-Lemma all_vertices_distinct : forall n, NoDup (all_vertices n).
-Proof.
-  intros n. unfold all_vertices. generalize (seq_NoDup n 1), (in_seq n 1).
-  generalize (seq 1 n). intros l Hdup Hrange.
-  assert (Hpos : forall x, In x l -> 1 <= x) by (intros x Hx; apply Hrange in Hx; lia).
-  clear Hrange. induction Hdup as [|x l Hnot _ IH]; simpl; constructor.
-  - intros Hin. apply in_map_iff in Hin. destruct Hin as (y & Heq & Hy).
-    apply Nat2Pos.inj in Heq; [congruence|..].
-    + specialize (Hpos y (or_intror Hy)). lia.
-    + specialize (Hpos x (or_introl eq_refl)). lia.
-  - apply IH. intros y Hy. apply Hpos. now right.
-Qed.
-
 Lemma all_vertices_succ : forall n,
   all_vertices (S n) = all_vertices n ++ [Pos.of_succ_nat n].
 Proof.
@@ -174,7 +128,7 @@ Proof.
   now rewrite Pos.of_nat_succ.
 Qed.
 
-Lemma distinct_spec : forall l : list V, distinct l = true -> NoDup l.
+Lemma no_repeats_spec : forall l : list V, no_repeats l = true -> NoDup l.
 Proof.
   induction l as [|v l IH]; simpl; [constructor|].
   destruct (holds (same v) l) eqn:Hholds; simpl; [discriminate|]. intros Hl.
@@ -246,10 +200,10 @@ Qed.
 
 (** Every two vertices that an edge of the graph joins are joined in the question. *)
 Lemma rows_edge : forall p q, In p numbered -> In q numbered -> fst p <> fst q ->
-  edge Q (snd p) (snd q) -> In (ordered (fst p) (fst q)) (rows Q close numbered).
+  edge Q (snd p) (snd q) -> In (ordered (fst p, fst q)) (rows Q close numbered).
 Proof.
   intros [i u] [j v] Hp Hq Hij Hedge. simpl in *. apply edge_meets in Hedge.
-  unfold ordered. destruct (Pos.ltb_spec i j).
+  unfold ordered. simpl. destruct (Pos.ltb_spec i j).
   - now apply rows_ascending with u v.
   - apply rows_ascending with v u; try tauto. lia.
 Qed.
@@ -311,9 +265,9 @@ Hypothesis through : forall u v, In (u, v) (required Q) ->
 
 Variable all : list (vertex * vertex).
 Hypothesis complete : forall p q, In p numbered -> In q numbered -> fst p <> fst q ->
-  edge Q (snd p) (snd q) -> In (ordered (fst p) (fst q)) all.
+  edge Q (snd p) (snd q) -> In (ordered (fst p, fst q)) all.
 
-Lemma track_ordered : forall p q, In (p, q) track -> In (ordered (fst p) (fst q)) all.
+Lemma track_ordered : forall p q, In (p, q) track -> In (ordered (fst p, fst q)) all.
 Proof.
   intros p q Hin. destruct (within p q Hin) as (Hp & Hq & Hdiffer).
   apply complete; try assumption. apply along. now apply (in_map (on_both snd) _ _ Hin).
@@ -332,7 +286,7 @@ Lemma track_required : forall e, In e (required Q) -> exists i j,
   (In (i, j) (map (on_both fst) track) \/ In (j, i) (map (on_both fst) track)).
 Proof.
   intros [u v] Hin.
-  assert (Hstep : exists p q, In (p, q) track /\ place_pair Q (u, v) = Some (ordered (fst p) (fst q))).
+  assert (Hstep : exists p q, In (p, q) track /\ place_pair Q (u, v) = Some (ordered (fst p, fst q))).
   { destruct (through u v Hin) as [Hmap | Hmap];
       apply in_map_iff in Hmap; destruct Hmap as ([p q] & Heq & Htrack);
       injection Heq as <- <-; exists p, q; split; try assumption;
@@ -341,7 +295,7 @@ Proof.
       [|rewrite ordered_sym by auto]; reflexivity. }
   destruct Hstep as (p & q & Htrack & Hplace).
   pose proof (track_ordered p q Htrack) as Hall.
-  pose proof (in_map (on_both fst) _ _ Htrack) as Hused. unfold on_both in Hused at 1. simpl in Hused.
+  pose proof (in_map (on_both fst) _ _ Htrack) as Hused. simpl in Hused.
   destruct (ordered_either (fst p) (fst q)) as [Hord | Hord]; rewrite Hord in *.
   - exists (fst p), (fst q). auto.
   - exists (fst q), (fst p). auto.

@@ -6,7 +6,7 @@
     refuted, or something asked for is missing, there is no such path or cycle. *)
 
 From Coq Require Import Bool List Permutation PArith Arith Lia.
-From Certify Require Import Statement Question Normal NormalFacts.
+From Certify Require Import Statement Steps Question Edges Normal NormalFacts.
 Import ListNotations.
 
 Section Sound.
@@ -16,11 +16,11 @@ Variable Q : query V.
 
 (** ** Cycles *)
 
-Lemma cycle_kept : forall h, distinct (vertices Q) = true -> ham_cycle Q h ->
+Lemma cycle_kept : forall h, no_repeats (vertices Q) = true -> ham_cycle Q h ->
   exists q, normal_cycle Q = Asks q /\ exists c, cycle q c.
 Proof.
-  intros h Hdistinct (Hlen & Hperm & Hedge & Hrequired).
-  pose proof (distinct_spec _ Hdistinct) as Honce.
+  intros h Hrepeats (Hlen & Hperm & Hedge & Hrequired).
+  pose proof (no_repeats_spec _ Hrepeats) as Honce.
   destruct (numbered_order Q h Hperm) as (p & -> & Hp & Hfst & Hdup).
   rewrite map_length in Hlen. rewrite cycle_steps_map in Hedge, Hrequired.
   set (track := cycle_steps p) in *.
@@ -42,7 +42,7 @@ Proof.
                            wanted i j Hwanted) as Hused.
   destruct (ask_all (length (vertices Q)) all wanted) as [q Hq].
   { intros [i j] Hin. now apply Hused. }
-  exists q. unfold normal_cycle. rewrite Hdistinct, Hwanted. fold all.
+  exists q. unfold normal_cycle. rewrite Hrepeats, Hwanted. fold all.
   split; [assumption|].
   destruct (ask_question _ _ _ _ Hq) as (Horder & Hall & Hneeded).
   exists (map fst p). unfold cycle, joined, used.
@@ -56,19 +56,19 @@ Theorem normal_cycle_refuted : forall q,
   normal_cycle Q = Asks q -> refuted q -> ~ exists h, ham_cycle Q h.
 Proof.
   intros q Hnormal Hrefuted [h Hham].
-  destruct (distinct (vertices Q)) eqn:Hdistinct.
-  - destruct (cycle_kept h Hdistinct Hham) as (q' & Hq' & c & Hc).
+  destruct (no_repeats (vertices Q)) eqn:Hrepeats.
+  - destruct (cycle_kept h Hrepeats Hham) as (q' & Hq' & c & Hc).
     rewrite Hnormal in Hq'. injection Hq' as <-. apply Hrefuted. now exists c.
-  - unfold normal_cycle in Hnormal. rewrite Hdistinct in Hnormal. discriminate.
+  - unfold normal_cycle in Hnormal. rewrite Hrepeats in Hnormal. discriminate.
 Qed.
 
 Theorem normal_cycle_missing :
   normal_cycle Q = Missing -> ~ exists h, ham_cycle Q h.
 Proof.
   intros Hnormal [h Hham].
-  destruct (distinct (vertices Q)) eqn:Hdistinct.
-  - destruct (cycle_kept h Hdistinct Hham) as (q & Hq & _). congruence.
-  - unfold normal_cycle in Hnormal. rewrite Hdistinct in Hnormal. discriminate.
+  destruct (no_repeats (vertices Q)) eqn:Hrepeats.
+  - destruct (cycle_kept h Hrepeats Hham) as (q & Hq & _). congruence.
+  - unfold normal_cycle in Hnormal. rewrite Hrepeats in Hnormal. discriminate.
 Qed.
 
 (** ** Paths *)
@@ -103,7 +103,7 @@ Lemma apex_steps : forall (A : Type) (x : A) rest most y apex, x :: rest = most 
 Proof.
   intros A x rest most y apex Heq. cbn [app].
   rewrite (cycle_steps_close _ x (rest ++ [apex]) (x :: rest) apex eq_refl), app_comm_cons.
-  rewrite Heq, <- app_assoc. cbn [app]. now rewrite path_steps_snoc, <- app_assoc.
+  rewrite Heq, <- app_assoc. cbn [app]. now rewrite path_steps_app, <- app_assoc.
 Qed.
 
 Notation apex := (Pos.of_succ_nat (length (vertices Q))).
@@ -136,12 +136,12 @@ Proof.
     destruct (Hplace s Hs); congruence.
 Qed.
 
-Lemma path_kept : forall h, distinct (vertices Q) = true -> ham_path Q h ->
+Lemma path_kept : forall h, no_repeats (vertices Q) = true -> ham_path Q h ->
   normal_path Q = OneVertex \/
   exists q, normal_path Q = Asks q /\ exists c, cycle q c.
 Proof.
-  intros h Hdistinct (Hsome & (Hperm & Hedge & Hrequired) & Hends).
-  pose proof (distinct_spec _ Hdistinct) as Honce.
+  intros h Hrepeats (Hsome & (Hperm & Hedge & Hrequired) & Hends).
+  pose proof (no_repeats_spec _ Hrepeats) as Honce.
   destruct (numbered_order Q h Hperm) as (p & -> & Hp & Hfst & Hdup).
   rewrite path_steps_map in Hedge, Hrequired.
   assert (Hwithin : forall a b, In (a, b) (path_steps p) ->
@@ -173,7 +173,7 @@ Proof.
     - now apply Hused. }
   assert (Hcount : length (vertices Q) = S (length rest)).
   { apply Permutation_length in Hperm. now rewrite map_length in Hperm. }
-  unfold normal_path. rewrite Hdistinct, Hwanted, Hcollect, Hq.
+  unfold normal_path. rewrite Hrepeats, Hwanted, Hcollect, Hq.
   destruct rest as [|z rest]; [left; now rewrite Hcount | right].
   exists q. split; [now rewrite Hcount|].
   destruct (ask_question _ _ _ _ Hq) as (Horder & Hall & Hneeded).
@@ -199,19 +199,19 @@ Theorem normal_path_refuted : forall q,
   normal_path Q = Asks q -> refuted q -> ~ exists h, ham_path Q h.
 Proof.
   intros q Hnormal Hrefuted [h Hham].
-  destruct (distinct (vertices Q)) eqn:Hdistinct.
-  - destruct (path_kept h Hdistinct Hham) as [Hone | (q' & Hq' & c & Hc)]; [congruence|].
+  destruct (no_repeats (vertices Q)) eqn:Hrepeats.
+  - destruct (path_kept h Hrepeats Hham) as [Hone | (q' & Hq' & c & Hc)]; [congruence|].
     rewrite Hnormal in Hq'. injection Hq' as <-. apply Hrefuted. now exists c.
-  - unfold normal_path in Hnormal. rewrite Hdistinct in Hnormal. discriminate.
+  - unfold normal_path in Hnormal. rewrite Hrepeats in Hnormal. discriminate.
 Qed.
 
 Theorem normal_path_missing :
   normal_path Q = Missing -> ~ exists h, ham_path Q h.
 Proof.
   intros Hnormal [h Hham].
-  destruct (distinct (vertices Q)) eqn:Hdistinct.
-  - destruct (path_kept h Hdistinct Hham) as [Hone | (q & Hq & _)]; congruence.
-  - unfold normal_path in Hnormal. rewrite Hdistinct in Hnormal. discriminate.
+  destruct (no_repeats (vertices Q)) eqn:Hrepeats.
+  - destruct (path_kept h Hrepeats Hham) as [Hone | (q & Hq & _)]; congruence.
+  - unfold normal_path in Hnormal. rewrite Hrepeats in Hnormal. discriminate.
 Qed.
 
 End Sound.

@@ -1,0 +1,248 @@
+"""The theorems of a folder as one file of Coq.
+
+A theorem for each impossible instance says `~ exists h, ham_path (Q 24) h`, of queries
+that are defined at the top of the file. When every instance has its certificate, one
+theorem more says for the whole table where the object exists, or for how many graphs.
+"""
+
+from __future__ import annotations
+
+import gzip
+import json
+import re
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass, field
+from itertools import islice
+from pathlib import Path
+from typing import Any
+
+from certify.claim.claim import Claim, read_claim
+from certify.claim.instances import Key, name_key
+from certify.claim.parts import Rule
+from certify.errors import InputError
+from certify.evidence.lines import claim_name, read_evidence
+from certify.graph.build import instances
+from certify.report.theorem.certificate import NotTakenError, write_certificate
+from certify.report.theorem.queries import Family, define_graph
+
+_HEAD = """\
+From Coq Require Import Bool List ZArith String.
+From Certify Require Import Packed Statement Rules RulesSpec EdgeGraph Graph6 Normal Certificate
+  Table.
+From Certify Require Obstruction Counting Cases Sweep.
+Import ListNotations.
+Open Scope Z_scope.
+Open Scope lazy_bool_scope.
+"""
+
+
+@dataclass
+class Sheet:
+    """A file of theorems.
+
+    name: the file's, without ending. text: what it holds. theorems: their names.
+    not_taken: the instances that have no theorem, each with the reason.
+    table: whether there is a theorem about the whole table.
+    """
+
+    name: str
+    text: str
+    theorems: list[str]
+    not_taken: dict[str, str]
+    table: bool
+
+
+def write_sheet(folder: Path, wanted: str | None = None) -> Sheet:
+    """Write the theorems of a folder that the checker has accepted.
+
+    wanted: one instance, as messages write it; None: all, and the table.
+    Errors: InputError when there is no such instance, or the claim is endless.
+    Cost: linear in the evidence, which is held in memory once, as text.
+    """
+    claim = read_claim(folder / claim_name(folder))
+    if claim.growing is not None:
+        raise InputError(
+            f"{folder}: the kernel does not take endless claims yet; nothing was written\n"
+            f"  next: give {claim.growing} an upper end, for a theorem about that table"
+        )
+    title = folder.resolve().name + (f" {wanted}" if wanted else "")
+    sheet = _Writer(claim, folder, wanted).write(_identifier(title))
+    if not (sheet.theorems or sheet.not_taken):
+        raise InputError(
+            f"{folder}: there is no instance {wanted!r}; write n=18, m=3,n=4, "
+            "or 17 for a graph of a list"
+        )
+    return sheet
+
+
+def _identifier(text: str) -> str:
+    """Return a name of a file that Coq can load: letters, digits and _."""
+    word = re.sub(r"\W+", "_", text, flags=re.ASCII).strip("_")
+    return word if word[:1].isalpha() else f"claim_{word}"
+
+
+@dataclass
+class _Row:
+    """One instance: its record, and its certificate if the kernel takes it."""
+
+    key: Key
+    record: dict[str, Any]
+    identifier: str
+    query: str
+    definition: str | None = None
+    reason: str = ""
+
+
+@dataclass
+class _Writer:
+    """Writes the file of one claim."""
+
+    claim: Claim
+    folder: Path
+    wanted: str | None
+    parts: list[str] = field(default_factory=list)
+
+    def write(self, name: str) -> Sheet:
+        rule = self.claim.graphs
+        family = Family(self.claim, rule) if isinstance(rule, Rule) else None
+        rows = list(self._rows(family))
+        if family is not None:
+            self.parts.append("\n".join(family.define()))
+        for row in rows:
+            self._define(row)
+        impossible = [row for row in rows if row.record["answer"] == "impossible"]
+        theorems = [self._state(row) for row in rows if self._is_stated(row)]
+        whole = self.wanted is None and bool(rows) and all(row.definition for row in rows)
+        if whole and family is not None and family.parameters:
+            theorems += self._state_table(family, rows)
+        elif whole and family is None:
+            theorems.append(self._state_count(rows))
+        self.parts.append(_gather(theorems))
+        text = f"{self._comment(len(impossible))}\n{_HEAD}\n" + "\n\n".join(self.parts) + "\n"
+        not_taken = {name_key(row.key): row.reason for row in rows if row.definition is None}
+        return Sheet(name, text, theorems, not_taken, whole)
+
+    @property
+    def _by_rule(self) -> bool:
+        return isinstance(self.claim.graphs, Rule)
+
+    @property
+    def _structure(self) -> str:
+        return "cycle" if self.claim.structure == "hamiltonian-cycle" else "path"
+
+    def _comment(self, impossible: int) -> str:
+        """Return the first lines; the claim's own words must not end the comment."""
+        title = (self.claim.title or "A claim without a title").replace("*)", "* )")
+        title = title.replace("(*", "( *").replace('"', "'")
+        noun = "instance has" if impossible == 1 else "instances have"
+        return (
+            f"(** * {' '.join(title.split())}\n\n"
+            f"    {impossible} {noun} no Hamiltonian {self._structure}. What is meant by one is "
+            "said in Statement.v,\n    what the words of a rule mean in Rules.v and RulesSpec.v. *)"
+        )
+
+    def _rows(self, family: Family | None) -> Iterator[_Row]:
+
+        for instance, line in zip(
+            instances(self.claim, self.folder), read_evidence(self.folder), strict=True
+        ):
+            if self.wanted is not None and instance.name != self.wanted.replace(" ", ""):
+                continue
+            record = json.loads(line)
+            word = _identifier(instance.name) if family is not None else instance.name
+            if family is None:
+                query = f"graph_{instance.key}"
+                self.parts.append(define_graph(self.claim, instance))
+            else:
+                query = family.apply("Q", family.row_of(instance.key)) if family.parameters else "Q"
+            row = _Row(instance.key, record, word, query)
+            try:
+                row.definition = write_certificate(record, self._read_text)
+            except NotTakenError as error:
+                row.reason = str(error)
+            yield row
+
+    def _read_text(self, name: str) -> bytes:
+        return gzip.decompress((self.folder / name).read_bytes())
+
+    def _define(self, row: _Row) -> None:
+        if row.definition is not None:
+            self.parts.append(
+                f"Definition certificate_{row.identifier} : certificate :=\n  {row.definition}."
+            )
+
+    def _is_stated(self, row: _Row) -> bool:
+        """Return whether a row gets a theorem of its own: if impossible, or asked for."""
+        alone = self.wanted is not None or (not self.claim.parameters and self._by_rule)
+        return row.definition is not None and (row.record["answer"] == "impossible" or alone)
+
+    def _state(self, row: _Row) -> str:
+        answer = row.record["answer"]
+        name = f"{answer}_{row.identifier}"
+        sign = "~ " if answer == "impossible" else ""
+        lemma = f"{self._structure}_{answer}"
+        self.parts.append(
+            f"Theorem {name} : {sign}exists h, ham_{self._structure} ({row.query}) h.\n"
+            f"Proof. apply ({lemma} ({row.query}) certificate_{row.identifier}). "
+            "vm_cast_no_check (eq_refl true). Qed."
+        )
+        return name
+
+    def _state_table(self, family: Family, rows: Sequence[_Row]) -> list[str]:
+        existing = [row.key for row in rows if row.record["answer"] == "exists"]
+        variables = family.row(family.parameters)
+        conditions = len(self.claim.ranges) + (self.claim.keep is not None)
+        names = " ".join(family.parameters)
+        object_ = f"exists h, ham_{self._structure} (Q {variables}) h"
+        self.parts += [
+            family.define_claimed(existing),
+            family.define_instances(),
+            self._list_certificates(rows),
+            f"Theorem table : forall {names}, {family.conditions()}\n"
+            f"  (({object_}) <-> claimed {variables} = true).\n"
+            f"Proof.\n  intros {names}{' ?' * conditions}.\n"
+            f"  apply ({self._structure}_table Q claimed instances certificates).\n"
+            "  - vm_cast_no_check (eq_refl true).\n  - in_table.\nQed.",
+        ]
+        theorems = ["table"]
+        if self.claim.answers.counts:
+            self._count("map Q instances", len(existing))
+            theorems.append("count")
+        return theorems
+
+    def _state_count(self, rows: Sequence[_Row]) -> str:
+        graphs = _wrap([row.query for row in rows])
+        self.parts += [
+            f"Definition graphs : list (query Z) :=\n  {graphs}.",
+            self._list_certificates(rows),
+        ]
+        self._count("graphs", sum(row.record["answer"] == "exists" for row in rows))
+        return "count"
+
+    def _count(self, queries: str, existing: int) -> None:
+        """State of how many queries the object exists."""
+        self.parts.append(
+            f"Theorem count :\n  counted (fun Q => exists h, ham_{self._structure} Q h) "
+            f"({queries}) {existing}%nat.\n"
+            f"Proof.\n  apply ({self._structure}_count ({queries}) certificates).\n"
+            f"  vm_cast_no_check (eq_refl (Some {existing}%nat)).\nQed."
+        )
+
+    def _list_certificates(self, rows: Sequence[_Row]) -> str:
+        names = _wrap([f"certificate_{row.identifier}" for row in rows])
+        return f"Definition certificates : list certificate :=\n  {names}."
+
+
+def _gather(theorems: Sequence[str]) -> str:
+    """Return the end of the file: what all its theorems together assume."""
+    lines = "".join(f"\n  let _ := {theorem} in" for theorem in theorems)
+    return f"Definition all_theorems : True :={lines} I.\n\nPrint Assumptions all_theorems."
+
+
+def _wrap(words: Sequence[str]) -> str:
+    """Return a list of Coq with a few words a line."""
+    left = iter(words)
+    lines = []
+    while line := list(islice(left, 4)):
+        lines.append("; ".join(line))
+    return "[" + ";\n   ".join(lines) + "]"
