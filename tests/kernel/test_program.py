@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import gzip
 import json
+import re
 import shutil
 import tempfile
 from collections import Counter
@@ -43,7 +44,7 @@ from tests.corrupt import corrupt_bytes, corrupt_json
 from tests.kernel.asking import write_example
 from tests.kernel.conftest import ROOT
 
-FINITE = [path for path in sorted((ROOT / "proofs").iterdir()) if not path.name.startswith(".")]
+FOLDERS = [path for path in sorted((ROOT / "proofs").iterdir()) if not path.name.startswith(".")]
 KINDS = ["witness", "obstruction", "counting", "cases", "sweep", "clauses"]
 
 
@@ -59,7 +60,7 @@ def judge(folder: Path) -> dict[str, str]:
     }
 
 
-@pytest.mark.parametrize("folder", FINITE, ids=lambda path: path.name)
+@pytest.mark.parametrize("folder", FOLDERS, ids=lambda path: path.name)
 def test_all_evidence_for_finite_claims_is_accepted(folder: Path, program: Path) -> None:
     verdicts = Counter(ask(folder, program).values())
     endless = '.."' in (folder / "claim.toml").read_text().split("[instances]")[-1]
@@ -162,6 +163,44 @@ def test_corrupted_clause_proofs_are_judged_alike(form: str, program: Path) -> N
     run()
     assert seen["rejected"] >= (30 if form != "drat" else 0), seen
     assert bool(seen["hidden"]) == (form != "lrat"), seen
+
+
+DEMANDS = """
+ends = [1]|ends = [2]|ends = [1, "n"]|ends = ["n", 1]|ends = [3, 3]|ends = [0]|ends = [1, "n - 1"]
+required = [[1, 2]]|required = [[2, 1], ["n", "n - 2"]]|required = [[1, 1]]|required = [[1, 4]]
+forbidden = [[1, 2]]|forbidden = [["n", "n - 1"], [3, 1]]|forbidden = [[1, 1], [9, 9]]
+ends = [1]; required = [[1, 2]]|required = [[1, 2]]; forbidden = [[2, 1]]
+ends = [2]; forbidden = [[2, 1], [2, 3]]|ends = [1, "n"]; required = [[1, 3]]; forbidden = [[2, 4]]
+"""
+STRIP = """structure = "hamiltonian-path"
+[graph]
+vertices = "1..n"
+adjacent = "abs(a - b) in {1, 2}"
+[instances]
+n = "1..6"
+"""
+
+
+def test_what_is_asked_is_what_is_judged(program: Path) -> None:
+    """Evidence for a question with some demands is given for a question with others."""
+    texts = [STRIP, STRIP.replace("path", "cycle")]
+    for demand in re.split(r"[|\n]", DEMANDS.strip()):
+        head = "".join(f"{line}\n" for line in demand.split("; "))
+        texts.append(head + STRIP)
+        if "ends" not in demand:
+            texts.append(head + STRIP.replace("path", "cycle"))
+    with tempfile.TemporaryDirectory() as scratch:
+        made = [
+            read_files(make_folder(Path(scratch) / f"{i}", text)) for i, text in enumerate(texts)
+        ]
+    told: Counter[str] = Counter()
+    for files, text in zip(made, texts, strict=True):
+        assert both(files, program) == (["accepted"] * 6, ["accepted"] * 6), text
+        for other in texts[:: 1 + len(texts) // 9]:
+            verdicts, judged = both(files | {"claim.toml": other.encode()}, program)
+            assert verdicts == judged, (text, other)
+            told.update(verdicts)
+    assert min(told["accepted"], told["rejected"]) >= 100, told
 
 
 def test_lines_that_are_missing_swapped_or_too_many(program: Path) -> None:

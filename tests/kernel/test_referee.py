@@ -13,7 +13,7 @@ from pathlib import Path
 import pytest
 
 from certify.errors import InputError
-from certify.report.kernel.ask import Kernel
+from certify.report.kernel.ask import Kernel, ask_kernel
 from certify.report.kernel.program import build_program, find_compiler
 from tests.checker.folders import read_files, write_files
 from tests.kernel.asking import write_example
@@ -122,8 +122,27 @@ def test_what_is_no_instance_gets_no_verdict(text: str, program: Path) -> None:
 
 def test_the_program_goes_on_after_it_has_broken_off(kernel: Kernel) -> None:
     assert kernel.ask([EXAMPLE, "sweep [ x ]\n"]).startswith("it gave no verdict")
+    assert kernel.ask(["cycle impossible 1 [ ] [ 0 ] ] [ ]\n" * 10_000]).startswith("it gave no")
     assert kernel.ask([EXAMPLE, "sweep [ 3 2 5 1 4 ]\n"]) == "accepted"
     assert kernel.ask([EXAMPLE, "sweep [ 3 2 5 1 ]\n"]) == "rejected"
+
+
+def test_a_program_that_ends_gives_no_verdict(tmp_path: Path) -> None:
+    broken = tmp_path / "broken"
+    broken.write_text("#!/bin/sh\nread line\nexit 0\n")
+    broken.chmod(0o755)
+    folder = write_example(tmp_path / "good", "counting")
+    (opinion,) = ask_kernel(folder, broken)
+    assert (opinion.accepted, opinion.verdict) == (False, "not taken")
+
+
+@pytest.mark.parametrize("said", ["accepted ", "Accepted", "accepted\r", "acceptedaccepted", "yes"])
+def test_only_one_word_is_an_acceptance(said: str, tmp_path: Path) -> None:
+    talker = tmp_path / "talker"
+    talker.write_text(f"#!/bin/sh\ncat > /dev/null &\nprintf '{said}\\n'\n")
+    talker.chmod(0o755)
+    (opinion,) = ask_kernel(write_example(tmp_path / "good", "counting"), talker)
+    assert not opinion.accepted
 
 
 def limited(program: Path, text: str, kibibytes: int) -> str:

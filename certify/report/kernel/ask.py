@@ -29,8 +29,9 @@ from certify.report.referee import Opinion
 
 SECONDS = 3600
 MOST_BYTES = 1 << 28
-_LARGEST_STACK = 'ulimit -s "$(ulimit -H -s)" 2>/dev/null; exec "$0"'
-"""The extracted functions recurse along lists: 8 MiB end at some 100,000 edges or clauses."""
+_START = 'ulimit -s "$(ulimit -H -s)"; ulimit -v 8388608; exec "$0"'
+"""How a shell starts the program. Its functions recurse along lists, and a stack of 8 MiB ends
+at about 250,000 edges or clauses; and no sweep may take the memory of the whole machine."""
 
 
 class Kernel:
@@ -57,15 +58,15 @@ class Kernel:
         if said in (b"accepted\n", b"rejected\n"):
             return said.decode().strip()
         if said == b"overflow\n":
-            return "the stack is too small to tell; raise its limit (ulimit -H -s)"
+            return "its stack is too small to tell; raise the limit (ulimit -H -s)"
         self._stop()
-        return f"it gave no verdict within {SECONDS} seconds, or ended without one"
+        return f"it gave no verdict: {SECONDS} seconds or 8 GiB were not enough"
 
     def _talk(self, words: Iterable[bytes]) -> bytes:
         """Write an instance to the program, started if it is not running; return its line."""
         if self._run is None:
             self._run = subprocess.Popen(
-                ["/bin/sh", "-c", _LARGEST_STACK, str(self._program)],
+                ["/bin/sh", "-c", _START, str(self._program)],
                 stdin=subprocess.PIPE,
                 stdout=subprocess.PIPE,
                 stderr=subprocess.DEVNULL,
@@ -118,7 +119,9 @@ def ask_kernel(folder: Path, program: Path) -> Iterator[Opinion]:
                 yield Opinion(instance.name, False, f"not given to the kernel: {error}")
             else:
                 said = kernel.ask(words)
-                yield Opinion(instance.name, said == "accepted", f"the kernel: {said}")
+                # A limit that is reached is no verdict.
+                told = said in ("accepted", "rejected")
+                yield Opinion(instance.name, said == "accepted", f"the kernel: {said}", told)
 
 
 def _reader(folder: Path, name: str) -> Read:

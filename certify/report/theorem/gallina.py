@@ -13,6 +13,7 @@ binds first.
 from __future__ import annotations
 
 import ast
+import re
 from collections.abc import Iterable, Mapping, Sequence
 from functools import reduce
 from itertools import pairwise
@@ -22,72 +23,35 @@ from certify.claim.language import Expression
 from certify.claim.names import Scope
 from certify.claim.predicates import PREDICATES
 
-_KEYWORDS = frozenset(
-    [
-        "as",
-        "at",
-        "cofix",
-        "do",
-        "else",
-        "end",
-        "exists",
-        "exists2",
-        "fix",
-        "for",
-        "forall",
-        "fun",
-        "if",
-        "in",
-        "let",
-        "match",
-        "mod",
-        "return",
-        "then",
-        "using",
-        "where",
-        "with",
-        "Prop",
-        "Set",
-        "SProp",
-        "Type",
-        "by",
-    ]
+_PLAIN = re.compile(r"[a-z][a-z0-9]*|[A-Z]")
+"""Names that may stay as they are: nearly all that Coq knows have capitals or underscores."""
+
+_DELIMITER = re.compile(r"\(\*|\*\)")
+
+
+def _words(*lines: str) -> frozenset[str]:
+    return frozenset(" ".join(lines).split())
+
+
+_KEYWORDS = _words(
+    "as at by cofix do else end exists exists2 fix for forall fun if in let ltac match mod",
+    "return then using where with",
 )
 """Words of Coq that no variable can be called."""
 
-_OURS = frozenset(
-    [
-        "Z",
-        "Q",
-        "S",
-        "O",
-        "abs",
-        "and",
-        "bool",
-        "false",
-        "fst",
-        "list",
-        "member",
-        "min",
-        "max",
-        "negb",
-        "nil",
-        "pair",
-        "query",
-        "range",
-        "same_set",
-        "snd",
-        "true",
-        "vertices",
-        "adjacent",
-        "ends",
-        "required",
-        "forbidden",
-        "claimed",
-        "instances",
-        "certificates",
-    ]
-) | frozenset(PREDICATES)
+_CONSTRUCTORS = _words(
+    "conj cons exist exist2 false inhabits inl inleft inr inright left mkhypo mkmorph nil nothing",
+    "more pair right true tt I O S",
+)
+"""Names that are no variables in `let '(m, n) := row in`, because they stand for a case."""
+
+_OURS = (
+    _words(
+        "a adjacent b bool certificates claimed ends extend filter forbidden fst graphs h holds",
+        "instances list map member negb query range required row same snd vertices Q Z",
+    )
+    | PREDICATES.keys()
+)
 """Names that the files we write use themselves."""
 
 _SIGNS: Mapping[type[ast.operator], str] = {
@@ -104,12 +68,13 @@ _TURNED: Mapping[type[ast.cmpop], str] = {ast.Gt: "<?", ast.GtE: "<=?"}
 
 
 def write_name(name: str) -> str:
-    """Return a parameter as a variable of Coq: itself, or with a prime where that is taken.
+    """Return a parameter as a variable of Coq: itself, or with a prime where that may be taken.
 
-    No name of a claim has a prime, so different names stay different.
+    No name of a claim has a prime, so different names stay different; and no name that we
+    make of a coordinate, such as `a_x`, is plain.
     """
-    taken = name in _KEYWORDS or name in _OURS or name[:2] in ("a_", "b_") or name in ("a", "b")
-    return f"{name}'" if taken else name
+    free = _PLAIN.fullmatch(name) and name not in _KEYWORDS | _CONSTRUCTORS | _OURS
+    return name if free else f"{name}'"
 
 
 def write_vertex(scope: Scope, vertex: str) -> str:
@@ -139,6 +104,16 @@ def write_range(bounds: Range) -> str:
 def write_list(items: Iterable[str]) -> str:
     """Return a list."""
     return f"[{'; '.join(items)}]"
+
+
+def write_comment(text: str) -> str:
+    """Return somebody else's words so that they can stand in a comment, on one line.
+
+    They must not end it, open another one or a text, nor turn the line around on a screen.
+    """
+    plain = "".join(c if c.isprintable() else " " for c in text)
+    apart = plain.replace("*", " * ") if _DELIMITER.search(plain) else plain
+    return " ".join(apart.replace('"', "'").split())
 
 
 def _number(value: int) -> str:

@@ -11,10 +11,12 @@ from dataclasses import dataclass
 
 from certify.claim.claim import Claim
 from certify.claim.instances import Key
+from certify.claim.language import Expression
 from certify.claim.parts import Rule, Vertex
 from certify.graph.build import Instance, name_vertices
 from certify.graph.graph import Graph
 from certify.report.theorem.gallina import (
+    write_comment,
     write_integer,
     write_list,
     write_name,
@@ -57,7 +59,10 @@ class Family:
         return f"{name} {row}" if self.parameters else name
 
     def define(self) -> Iterator[str]:
-        """Yield the definition of the queries, line by line."""
+        """Yield the definition of the queries, line by line, with the claim's own words."""
+        yield f"(** As in the claim: adjacent = {_told(self.rule.adjacent)} *)"
+        if self.rule.keep is not None:
+            yield f"(** where = {_told(self.rule.keep)} *)"
         if not self.parameters:
             yield f"Definition Q : query {self._vertex_type} :="
         elif len(self.parameters) == 1:
@@ -121,10 +126,13 @@ class Family:
         head = f"Definition claimed (row : {self.row_type}) : bool :=\n  "
         if answers.truth is None:
             found = ";\n     ".join(self.row_of(key) for key in existing)
-            return f"{head}holds (same row)\n    [{found}]."
+            test = "member row" if len(self.parameters) == 1 else "holds (same row)"
+            return f"(** Not as claimed: as found. *)\n{head}{test}\n    [{found}]."
         if isinstance(answers.truth, bool):
             return f"{head}{'true' if answers.truth != answers.inverted else 'false'}."
         text = write_rule(answers.truth)
+        key = "impossible" if answers.inverted else "exists"
+        head = f"(** As in the claim: {key} = {_told(answers.truth)} *)\n{head}"
         if answers.inverted:
             text = f"negb ({text})"
         if len(self.parameters) == 1:
@@ -135,6 +143,10 @@ class Family:
         return names[0] if len(names) == 1 else f"'({', '.join(names)})"
 
 
+def _told(rule: Expression) -> str:
+    return write_comment(rule.source.text)
+
+
 def define_graph(claim: Claim, instance: Instance) -> str:
     """Return the definition of the query about one graph of a list."""
     text = _graph(instance)
@@ -143,19 +155,31 @@ def define_graph(claim: Claim, instance: Instance) -> str:
         ends = write_list(_place(end) for end in named.ends)
         required, forbidden = map(_places, (named.required, named.forbidden))
         text = f"demand ({text})\n    {ends} {required} {forbidden}"
-    return f"Definition graph_{instance.key} : query Z :=\n  {text}."
+    head = f"Definition graph_{instance.key} : query Z :=\n  {text}."
+    return "\n".join([*_explain(instance.graph, text), head])
+
+
+def _explain(graph: Graph, text: str) -> Iterator[str]:
+    """Yield comments that say what the numbers of the vertices stand for."""
+    if graph.labels != tuple(range(graph.n)):
+        names = ", ".join(write_comment(str(label)) for label in graph.labels)
+        yield f"(** The vertices 0, 1, ... stand for: {names}. *)"
+    if f"({NOWHERE})" in text:
+        yield f"(** {NOWHERE} stands for a vertex that this graph does not have. *)"
 
 
 def _graph(instance: Instance) -> str:
-    source = (instance.source or b"").strip().removeprefix(b">>graph6<<")
-    if source and instance.graph.labels == tuple(range(instance.graph.n)) and _is_graph6(source):
+    """Return a line of graph6 or sparse6 as it is, a graph of another format by its edges.
+
+    The other formats have characters that these lines do not have.
+    """
+    source = (instance.source or b"").strip()
+    for header in (b">>graph6<<", b">>sparse6<<"):
+        source = source.removeprefix(header)
+    line = source and all(63 <= character <= 126 for character in source.removeprefix(b":"))
+    if line and instance.graph.labels == tuple(range(instance.graph.n)):
         return f'graph6 "{source.decode("ascii")}"'
     return _edge_graph(instance.graph)
-
-
-def _is_graph6(source: bytes) -> bool:
-    """Return whether a line is graph6; the other formats have characters it does not have."""
-    return all(63 <= character <= 126 for character in source)
 
 
 def _edge_graph(graph: Graph) -> str:

@@ -23,6 +23,7 @@ from certify.errors import InputError
 from certify.evidence.lines import claim_name, read_evidence
 from certify.graph.build import instances
 from certify.report.theorem.certificate import NotTakenError, write_certificate
+from certify.report.theorem.gallina import write_comment
 from certify.report.theorem.queries import Family, define_graph
 
 _HEAD = """\
@@ -34,6 +35,13 @@ Import ListNotations.
 Open Scope Z_scope.
 Open Scope lazy_bool_scope.
 """
+
+_GRAPHS = "(** ** The graphs, and what is claimed *)"
+_EVIDENCE = """\
+(** ** The evidence
+
+    Nothing of it has to be read: with evidence that is not right the theorems do not compile. *)"""
+_THEOREMS = "(** ** The theorems *)"
 
 
 @dataclass
@@ -76,8 +84,12 @@ def write_sheet(folder: Path, wanted: str | None = None) -> Sheet:
 
 
 def _identifier(text: str) -> str:
-    """Return a name of a file that Coq can load: letters, digits and _."""
-    word = re.sub(r"\W+", "_", text, flags=re.ASCII).strip("_")
+    """Return a name of a file that Coq can load, or of a theorem: letters, digits and _.
+
+    Of two instances of a claim the names differ, for the signs of numbers are told.
+    """
+    signed = text.replace("=-", "=minus_")
+    word = re.sub(r"\W+", "_", signed, flags=re.ASCII).strip("_")
     return word if word[:1].isalpha() else f"claim_{word}"
 
 
@@ -105,20 +117,31 @@ class _Writer:
     def write(self, name: str) -> Sheet:
         rule = self.claim.graphs
         family = Family(self.claim, rule) if isinstance(rule, Rule) else None
-        rows = list(self._rows(family))
+        self.parts.append(_GRAPHS)
         if family is not None:
             self.parts.append("\n".join(family.define()))
+        rows = list(self._rows(family))
+        whole = self.wanted is None and bool(rows) and all(row.definition for row in rows)
+        existing = [row.key for row in rows if row.record["answer"] == "exists"]
+        tabled = whole and family is not None and bool(family.parameters)
+        if tabled and family is not None:
+            self.parts += [family.define_claimed(existing), family.define_instances()]
+        elif whole and family is None:
+            graphs = _wrap([row.query for row in rows])
+            self.parts.append(f"Definition graphs : list (query Z) :=\n  {graphs}.")
+        self.parts.append(_EVIDENCE)
         for row in rows:
             self._define(row)
-        impossible = [row for row in rows if row.record["answer"] == "impossible"]
+        if tabled or (whole and family is None):
+            self.parts.append(_list_certificates(rows))
+        self.parts.append(_THEOREMS)
         theorems = [self._state(row) for row in rows if self._is_stated(row)]
-        whole = self.wanted is None and bool(rows) and all(row.definition for row in rows)
-        if whole and family is not None and family.parameters:
-            theorems += self._state_table(family, rows)
+        if tabled and family is not None:
+            theorems += self._state_table(family, len(existing))
         elif whole and family is None:
-            theorems.append(self._state_count(rows))
+            theorems.append(self._count("graphs", len(existing)))
         self.parts.append(_gather(theorems))
-        text = f"{self._comment(len(impossible))}\n{_HEAD}\n" + "\n\n".join(self.parts) + "\n"
+        text = f"{self._comment(rows)}\n{_HEAD}\n" + "\n\n".join(self.parts) + "\n"
         not_taken = {name_key(row.key): row.reason for row in rows if row.definition is None}
         return Sheet(name, text, theorems, not_taken, whole)
 
@@ -130,19 +153,47 @@ class _Writer:
     def _structure(self) -> str:
         return "cycle" if self.claim.structure == "hamiltonian-cycle" else "path"
 
-    def _comment(self, impossible: int) -> str:
-        """Return the first lines; the claim's own words must not end the comment."""
-        title = (self.claim.title or "A claim without a title").replace("*)", "* )")
-        title = title.replace("(*", "( *").replace('"', "'")
-        noun = "instance has" if impossible == 1 else "instances have"
+    def _comment(self, rows: Sequence[_Row]) -> str:
+        """Return the first lines: what is shown here, and what has to be read to believe it."""
+        title = write_comment(self.claim.title) or "A claim without a title"
+        impossible = sum(row.record["answer"] == "impossible" for row in rows)
+        left = sum(row.definition is None for row in rows)
+        if self.wanted is not None:
+            shown = (
+                f"Of this claim the instance {', '.join(name_key(row.key) for row in rows)} alone."
+            )
+        else:
+            shown = (
+                f"Without a Hamiltonian {self._structure}: {impossible} of {len(rows)} instances."
+            )
+        if left:
+            shown += f" Without a theorem: {left}."
+        lines = "".join(f"\n    - {line}" for line in self._reading())
         return (
-            f"(** * {' '.join(title.split())}\n\n"
-            f"    {impossible} {noun} no Hamiltonian {self._structure}. What is meant by one is "
-            "said in Statement.v,\n    what the words of a rule mean in Rules.v and RulesSpec.v. *)"
+            f"(** * {title}\n\n    {shown}\n"
+            f"    To be read are the graphs and the theorems below, and of the kernel{lines} *)"
         )
 
-    def _rows(self, family: Family | None) -> Iterator[_Row]:
+    def _reading(self) -> Iterator[str]:
+        """Yield what of the kernel has to be read to know what the theorems say."""
+        yield f"Statement.v: what a Hamiltonian {self._structure} is"
+        text = "\n".join(self.parts)
+        if self._by_rule:
+            yield "Rules.v, or in its place RulesSpec.v: what the words of a rule mean"
+        for word, line in (
+            ('graph6 "', "Graph6.v: which graph a text is"),
+            (
+                "edge_graph ",
+                "EdgeGraph.v: edge_graph, of so many vertices 0, 1, ..., and its edges",
+            ),
+            ("demand (", "EdgeGraph.v: demand, with ends, required and forbidden edges"),
+            ("holds (same row)", "Normal.v: holds (same row), for a row of the list"),
+            ("  counted (", "Table.v: counted, for how many there are"),
+        ):
+            if word in text:
+                yield line
 
+    def _rows(self, family: Family | None) -> Iterator[_Row]:
         for instance, line in zip(
             instances(self.claim, self.folder), read_evidence(self.folder), strict=True
         ):
@@ -188,38 +239,22 @@ class _Writer:
         )
         return name
 
-    def _state_table(self, family: Family, rows: Sequence[_Row]) -> list[str]:
-        existing = [row.key for row in rows if row.record["answer"] == "exists"]
+    def _state_table(self, family: Family, existing: int) -> list[str]:
         variables = family.row(family.parameters)
         conditions = len(self.claim.ranges) + (self.claim.keep is not None)
         names = " ".join(family.parameters)
         object_ = f"exists h, ham_{self._structure} (Q {variables}) h"
-        self.parts += [
-            family.define_claimed(existing),
-            family.define_instances(),
-            self._list_certificates(rows),
-            f"Theorem table : forall {names}, {family.conditions()}\n"
+        self.parts.append(
+            f"Theorem table : forall {names}, {family.conditions().rstrip()}\n"
             f"  (({object_}) <-> claimed {variables} = true).\n"
-            f"Proof.\n  intros {names}{' ?' * conditions}.\n"
+            f"Proof.\n  intros{' ?' * (len(family.parameters) + conditions)}.\n"
             f"  apply ({self._structure}_table Q claimed instances certificates).\n"
-            "  - vm_cast_no_check (eq_refl true).\n  - in_table.\nQed.",
-        ]
-        theorems = ["table"]
-        if self.claim.answers.counts:
-            self._count("map Q instances", len(existing))
-            theorems.append("count")
-        return theorems
+            "  - vm_cast_no_check (eq_refl true).\n  - in_table.\nQed."
+        )
+        counts = self.claim.answers.counts
+        return ["table", *([self._count("map Q instances", existing)] if counts else [])]
 
-    def _state_count(self, rows: Sequence[_Row]) -> str:
-        graphs = _wrap([row.query for row in rows])
-        self.parts += [
-            f"Definition graphs : list (query Z) :=\n  {graphs}.",
-            self._list_certificates(rows),
-        ]
-        self._count("graphs", sum(row.record["answer"] == "exists" for row in rows))
-        return "count"
-
-    def _count(self, queries: str, existing: int) -> None:
+    def _count(self, queries: str, existing: int) -> str:
         """State of how many queries the object exists."""
         self.parts.append(
             f"Theorem count :\n  counted (fun Q => exists h, ham_{self._structure} Q h) "
@@ -227,16 +262,21 @@ class _Writer:
             f"Proof.\n  apply ({self._structure}_count ({queries}) certificates).\n"
             f"  vm_cast_no_check (eq_refl (Some {existing}%nat)).\nQed."
         )
+        return "count"
 
-    def _list_certificates(self, rows: Sequence[_Row]) -> str:
-        names = _wrap([f"certificate_{row.identifier}" for row in rows])
-        return f"Definition certificates : list certificate :=\n  {names}."
+
+def _list_certificates(rows: Sequence[_Row]) -> str:
+    names = _wrap([f"certificate_{row.identifier}" for row in rows])
+    return f"Definition certificates : list certificate :=\n  {names}."
 
 
 def _gather(theorems: Sequence[str]) -> str:
     """Return the end of the file: what all its theorems together assume."""
     lines = "".join(f"\n  let _ := {theorem} in" for theorem in theorems)
-    return f"Definition all_theorems : True :={lines} I.\n\nPrint Assumptions all_theorems."
+    return (
+        "(** What they assume, all together: Coq says so when it has compiled this. *)\n"
+        f"Definition all_theorems : True :={lines} I.\n\nPrint Assumptions all_theorems."
+    )
 
 
 def _wrap(words: Sequence[str]) -> str:
