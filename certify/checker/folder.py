@@ -96,13 +96,22 @@ class FolderCheck:
         return replace(verdict, line=number)
 
     def _check_counts(self, claim: Claim) -> None:
-        if claim.counts and not (self.rejected or self.left_open):
-            for answer, count in claim.counts.items():
-                if self.answers[answer] != count:
-                    raise Rejected(
-                        f"the claim says {answer} for {count} instances, "
-                        f"and the evidence shows it for {self.answers[answer]}"
-                    )
+        """Refuse counts that are wrong, whatever the answers to what is open will be.
+
+        With nothing open, none may be missing; else only as many as are open.
+        """
+        if self.rejected:
+            return
+        besides = f", with {self.left_open} left open" if self.left_open else ""
+        missing = {answer: count - self.answers[answer] for answer, count in claim.counts.items()}
+        for answer, count in missing.items():
+            if not 0 <= count <= self.left_open:
+                raise Rejected(
+                    f"the claim says {answer} for {claim.counts[answer]} instances, "
+                    f"and the evidence shows it for {self.answers[answer]}{besides}"
+                )
+        if len(missing) == 2 and sum(missing.values()) != self.left_open:
+            raise Rejected("the counts of the claim do not add up to the number of instances")
 
 
 def describe(check: FolderCheck, verdict: Verdict) -> dict[str, Any]:

@@ -9,6 +9,7 @@ from .simple import build_graph, limit_vertices
 from .strict import BadClaim
 
 MOST_LINE = 1 << 26
+_BITS = [format(value, "06b") for value in range(64)]
 
 
 def read_lines(lines: Iterable[bytes]) -> Iterator[Graph]:
@@ -56,12 +57,17 @@ def _read_size(line: bytes) -> tuple[int, list[int]]:
     return n, values[marks + width :]
 
 
+def _write_bits(values: list[int]) -> str:
+    """Return the bits of 6-bit values. Of the 64 texts there is one each, however long the line."""
+    return "".join([_BITS[value] for value in values])
+
+
 def _read_graph6(line: bytes) -> Graph:
     n, values = _read_size(line)
     size = n * (n - 1) // 2
     if len(values) != (size + 5) // 6:
         raise BadClaim("the line has the wrong length")
-    bits = "".join([format(value, "06b") for value in values])
+    bits = _write_bits(values)
     if "1" in bits[size:]:
         raise BadClaim("the padding is not zero")
     return build_graph(range(n), _read_columns(n, bits))
@@ -81,8 +87,8 @@ def _read_columns(n: int, bits: str) -> Iterator[Edge]:
 def _read_sparse6(line: bytes) -> Graph:
     n, values = _read_size(line)
     width = max(n - 1, 0).bit_length()
-    bits = "".join([format(value, "06b") for value in values])
-    pairs: list[Edge] = []
+    bits = _write_bits(values)
+    pairs: set[Edge] = set()  # An edge may be repeated as often as there is room in a line.
     v = place = end = 0
     while n > 1 and place + 1 + width <= len(bits):
         v += int(bits[place])
@@ -93,7 +99,7 @@ def _read_sparse6(line: bytes) -> Graph:
         if x > v:
             v = x
         else:
-            pairs.append((x, v))
+            pairs.add((x, v))
             end = place
     # After the last edge: ones up to the end of the byte; a zero first where ones
     # alone could be read as an edge.

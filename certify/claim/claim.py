@@ -105,13 +105,19 @@ class Claim:
         return value != self.answers.inverted
 
     def check_counts(self, answers: Iterable[str]) -> str | None:
-        """Return how the answers of all instances differ from the counts claimed, if they do."""
-        found = Counter(answers)
+        """Return how the answers of all instances differ from the counts claimed, if they do.
+
+        Those that are open differ only if no way to settle them would make the counts right.
+        """
+        counts, found = self.answers.counts, Counter(answers)
         wrong = [
             f"{answer} in {count:,} instances is claimed, and found is {found[answer]:,}"
-            for answer, count in self.answers.counts.items()
-            if found[answer] != count
+            for answer, count in counts.items()
+            if not found[answer] <= count <= found[answer] + found["open"]
         ]
+        total = sum(counts.values())
+        if not wrong and len(counts) == 2 and total != found.total():
+            wrong = [f"{total:,} instances are claimed in all, and there are {found.total():,}"]
         return "; ".join(wrong) or None
 
 

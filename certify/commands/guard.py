@@ -62,8 +62,8 @@ def guard_command(
     Finds every claim and every folder of evidence below ROOT (or here), and fails
     when a claim has no evidence or changed without it, when an instance is missing,
     rejected, contradicted or open, or when a file lies in a folder of evidence that its manifest
-    does not list. Folders whose names begin with a point, node_modules and virtual
-    environments are not looked into.
+    does not list. Claims are TOML files. Folders and files whose names begin with a point,
+    node_modules and virtual environments are not looked into.
 
     A file guard.toml beside a claim may allow instances to be open, and further files:
     open = ["n=31"], files = ["notes/*"]. An allowance that is not needed fails.

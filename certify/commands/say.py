@@ -58,6 +58,8 @@ class Verdicts:
         """
         if self.against:
             raise ContradictionError("the claim is contradicted:\n  " + "\n  ".join(self.against))
+        if complaint is not None:
+            raise ContradictionError(f"the claim is contradicted: {complaint}")
         if self.left_count:
             more = " ..." if self.left_count > len(self.left) else ""
             errors = "".join(f"\n  {text}" for text in self.failed)
@@ -65,8 +67,6 @@ class Verdicts:
                 f"left open: {', '.join(self.left)}{more}{errors}"
                 "\n  next: give more time with --budget SECONDS"
             )
-        if complaint is not None:
-            raise ContradictionError(f"the claim is contradicted: {complaint}")
 
 
 @contextlib.contextmanager

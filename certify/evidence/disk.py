@@ -7,11 +7,11 @@ import errno
 import hashlib
 import os
 import shutil
-from collections.abc import Iterator
+from collections.abc import Iterable, Iterator
 from pathlib import Path
-from typing import BinaryIO
+from typing import IO, BinaryIO
 
-from certify.errors import DiskError
+from certify.errors import DiskError, InputError
 
 PIECE = 1 << 20
 _FULL = {errno.ENOSPC, errno.EFBIG, getattr(errno, "EDQUOT", errno.ENOSPC)}
@@ -47,9 +47,9 @@ def digest_of_file(path: Path) -> str:
 
 
 def digest_or_none(path: Path) -> str | None:
-    """Return the SHA-256 of a file, None if it cannot be read."""
+    """Return the SHA-256 of a regular file, None if it is none (such as a link) or unreadable."""
     try:
-        return digest_of_file(path) if path.is_file() else None
+        return digest_of_file(path) if path.is_file() and not path.is_symlink() else None
     except OSError:
         return None
 
@@ -60,6 +60,30 @@ def remove(path: Path) -> None:
         shutil.rmtree(path)
     else:
         path.unlink(missing_ok=True)
+
+
+def refuse_links(folder: Path, names: Iterable[str]) -> None:
+    """Refuse a symbolic link on the way from a folder to files that evidence needs in it.
+
+    No checker follows one, and what is written or removed behind it lies elsewhere.
+    Errors: InputError.
+    """
+    for name in names:
+        path = folder
+        for part in name.split("/"):
+            path /= part
+            if path.is_symlink():
+                raise InputError(
+                    f"{path}: is a symbolic link, and the checker follows none in a folder of "
+                    "evidence\n  next: put the file itself there, or give another folder with --out"
+                )
+
+
+def write_all(file: IO[bytes], data: bytes) -> None:
+    """Write all of some bytes to a file without a buffer, which may take fewer at a time."""
+    rest = memoryview(data)
+    while rest:
+        rest = rest[file.write(rest) :]
 
 
 @contextlib.contextmanager

@@ -59,9 +59,14 @@ class Ready:
             if digest_of_file(self._made / name) != digest:
                 raise InputError(f"{source}: has changed while it was copied\n  next: run it again")
 
-    def move(self, source: Path, name: str, digest: str) -> None:
-        """Take over a file that a run has written."""
+    def move(self, source: Path, name: str, digest: str, *, may_replace: bool) -> None:
+        """Take over a file that a run has written. Errors: InputError if it may not replace one."""
         if self._needs(name, digest):
+            if not may_replace and (self._folder / name).exists():
+                raise InputError(
+                    f"{self._folder / name}: holds other graphs than were given with --graphs\n"
+                    "  next: remove it, or give another folder with --out; what was found is kept"
+                )
             source.replace(self._made / name)
 
     def make_evidence(self, journal: Path, name: str) -> str:

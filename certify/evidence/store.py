@@ -17,6 +17,7 @@ A killed run is taken up by the next one: its journal joins the earlier lines.
 from __future__ import annotations
 
 import contextlib
+import hashlib
 import json
 import os
 import stat
@@ -32,8 +33,10 @@ from certify.claim.instances import EndlessKey, Key
 from certify.errors import DiskError, InputError
 from certify.evidence.disk import (
     digest_of_file,
+    refuse_links,
     remove,
     telling,
+    write_all,
     write_atomically,
     written,
 )
@@ -95,6 +98,8 @@ class Store:
     def __enter__(self) -> Self:
         """Take the folder, or raise InputError saying why that cannot be."""
         self._refuse_other_claim()
+        listed = self.claim.list_name
+        refuse_links(self.folder, [self.claim.name, CLAUSES, *([listed] if listed else [])])
         with telling(self.folder, "write here", next_step="give another folder with --out"):
             self._acquire()
             try:
@@ -150,6 +155,8 @@ class Store:
         self._state.put_in_place()
         self._refuse_other_claim()
         self._digests = {name: self._digest_of_given(name) for name in self._given()}
+        if self._digests[self.claim.name] != hashlib.sha256(self.claim.raw).hexdigest():
+            raise InputError(f"{self.claim.where}: has changed just now\n  next: run it again")
         head = json.dumps(self._digests, sort_keys=True).encode()
         if _read(self._unfinished / _HEAD) != head:
             for name in (PLAIN, CLAUSES, _EARLIER, _LIST, _READY):
@@ -291,7 +298,7 @@ class Store:
             for name, data in record.files.items():
                 if self.read_files([name]).get(name) != data:
                     write_atomically(self._unfinished / name, data)
-            _write_all(self._journal, record.line)
+            write_all(self._journal, record.line)
         self._files += record.files
 
     @contextlib.contextmanager
@@ -343,7 +350,9 @@ class Store:
                 raise InputError(f"{listed}: the list of graphs was not read to its end, as it is")
             found[listed] = read
             if self._list_source is not None:
-                self._state.move(self._unfinished / _LIST, listed, read)
+                # Beside the claim it may be the list of the user, and not one that a run put there.
+                elsewhere = not self.folder.samefile(self._home)
+                self._state.move(self._unfinished / _LIST, listed, read, may_replace=elsewhere)
         return found
 
     def _remove_leftovers(self, kept: set[str]) -> None:
@@ -385,10 +394,3 @@ def _read(path: Path) -> bytes | None:
     except OSError:
         pass
     return None
-
-
-def _write_all(file: IO[bytes], data: bytes) -> None:
-    """Write all of some bytes to a file without a buffer, which may take fewer at a time."""
-    rest = memoryview(data)
-    while rest:
-        rest = rest[file.write(rest) :]

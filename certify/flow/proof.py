@@ -61,8 +61,10 @@ def prove(
     stored, by their text (`n=18`, `m=3,n=4`, `17`), or `all`.
     jobs: how many instances at a time, each in a process of its own; 1 is this process.
     cluster: the address of a Dask scheduler, whose workers take them instead.
-    graphs: a file, or one open for reading, that holds the claim's list instead.
-    The evidence does not depend on the last three.
+    graphs: a file, or one open for reading, that holds the claim's list instead. It replaces
+    no other list beside the claim; in another folder one that a run put there.
+    The evidence does not depend on the last three; but several workers take what one would
+    leave open in parts, and so leave less open.
     Errors: InputError and below, before anything is written or with it undone.
     """
     path = Path(claim_path)

@@ -54,7 +54,9 @@ def _outcome(origin: Origin, result: Any, *, foreign: bool) -> Outcome:
         record = read_record(result.line, lambda _: dict(result.files))
         return Outcome(record, result.verdict, origin, result.stored, result.error)
     try:
-        record = read_record(result.line, lambda _: dict(result.files))
+        # Only files that the record names, which are those that the checker wants: any other
+        # would be written under whatever name was sent.
+        record = read_record(result.line, lambda names: {n: result.files[n] for n in names})
     except (ValueError, KeyError, TypeError, AttributeError, RecursionError):
         return _left_open(origin, "a worker sent no record")
     verdict = check_record(origin, record)

@@ -26,6 +26,8 @@ from certify.guard.report import (
 )
 
 _MOST_UNLISTED = 20
+_COUNTS = ("the claim says ", "the counts of the claim ")
+"""How the checker begins what no further search can put right."""
 
 
 class FolderGuard:
@@ -41,6 +43,7 @@ class FolderGuard:
         self._shown = shlex.quote(one_line(self.claim if name else folder / "CLAIM.toml"))
         self._troubles: list[Trouble] = []
         self._cases: list[Case] = []
+        self._is_through = False
         self._allowances = self._read_allowances()
 
     def _read_allowances(self) -> Allowances:
@@ -58,14 +61,19 @@ class FolderGuard:
             self._cases.append(case)
             yield case
         self._look_over(check)
+        self._is_through = True
 
     def report(self) -> Report:
-        """Return what was found; whatever of `cases()` was not read yet is read first."""
+        """Return what was found. A check that did not come to its end is a trouble."""
+        troubles = list(self._troubles)
+        if not self._is_through:
+            text = "the check did not come to its end\nnext: run certify check here to see why"
+            troubles.append(Trouble(self.folder, text))
         return Report(
             self.claim,
             self.evidence,
             tuple(self._cases),
-            tuple(self._troubles),
+            tuple(troubles),
             tuple(tell_unfinished(self.folder)),
         )
 
@@ -113,7 +121,8 @@ class FolderGuard:
             step = "put the claim file back that this evidence is for"
         for complaint in check.complaints:
             if not (changed and complaint.startswith(f"{self.claim.name} has changed")):
-                self._troubles.append(Trouble(self.folder, f"{complaint}\nnext: {step}"))
+                fix = "correct the claim, and run: " if complaint.startswith(_COUNTS) else ""
+                self._troubles.append(Trouble(self.folder, f"{complaint}\nnext: {fix}{step}"))
         unlisted = self._find_unlisted()
         if not check.complaints:
             left = [case.name for case in self._cases if case.state in (OPEN, ALLOWED)]

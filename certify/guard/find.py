@@ -3,14 +3,15 @@
 Looked into are all folders but those whose names begin with a point, `node_modules`,
 `__pycache__`, and virtual environments (which hold a `pyvenv.cfg`, and `bin` or
 `Scripts`, and neither evidence nor a claim.toml). Symbolic links to folders are not
-followed. One that leads to a claim in a folder that was not looked into is a trouble:
-following it might lead out of what is guarded, and passing over it would leave a
-claim unguarded.
+followed. One that leads to a folder that was not looked into, with a claim in it or
+anywhere below, is a trouble: following it might lead out of what is guarded, and passing
+over it would leave a claim unguarded.
 """
 
 from __future__ import annotations
 
 import os
+import shlex
 import stat
 from collections.abc import Iterator
 from dataclasses import dataclass, field
@@ -55,20 +56,40 @@ def find(root: Path) -> Found:
     What cannot be read, and so may be a claim, is a trouble.
     Cost: linear in the number of files; every TOML file is read.
     """
-    found = Found()
+    found, seen = Found(), set[str]()
+    links = _walk(root, found, seen)
+    while links:
+        link, behind = links.pop(), Found()
+        links += _walk(link, behind, seen)
+        found.troubles += _tell_link(link, behind)
+    for part in (found.claims, found.folders):
+        part.sort()
+    found.troubles.sort(key=lambda trouble: trouble.path)
+    return found
+
+
+def _walk(root: Path, found: Found, seen: set[str]) -> list[Path]:
+    """Find what is in a folder and below it, and return the links to folders.
+
+    seen: the real paths of folders that were looked into, which are passed over; those of
+    this walk are added.
+    """
     waiting, links = [root], []
-    seen = set()
     while waiting:
         folder = waiting.pop()
+        real = os.path.realpath(folder)
+        if real in seen:
+            continue
         try:
             with os.scandir(folder) as entries:
                 inside = sorted(entries, key=lambda entry: entry.name)
         except OSError as error:
             found.troubles.append(Trouble(folder, f"the folder cannot be read: {error.strerror}"))
             continue
-        if folder != root and _is_environment(folder, {entry.name for entry in inside}):
+        # Only what was named itself is looked into whatever it is.
+        if seen and _is_environment(folder, {entry.name for entry in inside}):
             continue
-        seen.add(os.path.realpath(folder))
+        seen.add(real)
         if holds_evidence(folder):
             found.folders.append(folder)
         for entry in inside:
@@ -81,13 +102,7 @@ def find(root: Path) -> Found:
                 links.append(path)
             elif may_be_claim(path):
                 _sort_in(path, found)
-    for link in links:
-        if os.path.realpath(link) not in seen:
-            found.troubles += _look_behind(link)
-    for part in (found.claims, found.folders):
-        part.sort()
-    found.troubles.sort(key=lambda trouble: trouble.path)
-    return found
+    return links
 
 
 def _is_environment(folder: Path, names: set[str]) -> bool:
@@ -110,24 +125,18 @@ def _sort_in(path: Path, found: Found) -> None:
         )
 
 
-def _look_behind(link: Path) -> Iterator[Trouble]:
-    """Tell a link to a folder that holds a claim or evidence."""
-    try:
-        if _is_guarded(link):
-            yield Trouble(
-                link,
-                "this symbolic link leads to a claim, and links to folders are not followed\n"
-                f"next: put the folder itself here, or run: certify guard {link}",
-            )
-    except OSError as error:
-        yield Trouble(link, f"what this symbolic link leads to cannot be read: {error.strerror}")
-
-
-def _is_guarded(folder: Path) -> bool:
-    """Return whether a folder itself holds a claim or evidence. Errors: OSError."""
-    return holds_evidence(folder) or any(
-        is_claim(path) for path in sorted(folder.iterdir()) if may_be_claim(path)
-    )
+def _tell_link(link: Path, behind: Found) -> Iterator[Trouble]:
+    """Tell a link to a folder with a claim or evidence, or with what cannot be read."""
+    if behind.claims or behind.folders:
+        yield Trouble(
+            link,
+            "this symbolic link leads to a claim, and links to folders are not followed\n"
+            f"next: put the folder itself here, or run: certify guard {shlex.quote(str(link))}",
+        )
+    # Out there, a folder below that cannot be read is no concern of ours.
+    for trouble in behind.troubles:
+        if trouble.path == link or not trouble.path.is_dir():
+            yield Trouble(link, f"behind this symbolic link, {trouble.path}: {trouble.text}")
 
 
 def is_met(path: Path) -> bool:
@@ -144,9 +153,12 @@ def is_met(path: Path) -> bool:
 
 
 def may_be_claim(path: Path) -> bool:
-    """Return whether a file has the name of a TOML file that is not hidden, nor our own."""
+    """Return whether a file has the name of a TOML file that is not hidden.
+
+    Also guard.toml: a claim in a file of that name must not go unseen.
+    """
     name = path.name.lower()
-    return name.endswith(".toml") and not name.startswith(".") and name != ALLOWANCES
+    return name.endswith(".toml") and not name.startswith(".")
 
 
 def is_claim(path: Path) -> bool:

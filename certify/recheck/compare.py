@@ -73,7 +73,10 @@ def compare(
 def _judge(plan: Plan, part: Part, home: Path, outcomes: Iterator[Outcome]) -> Iterator[Finding]:
     rows = iter(part.rows)
     try:
-        for outcome, row in zip(outcomes, rows, strict=True):
+        for position, (outcome, row) in enumerate(zip(outcomes, rows, strict=True), 1):
+            # The graphs of the rows are in a list of their own.
+            if outcome.record.key != (position if isinstance(row.key, int) else row.key):
+                raise RuntimeError(f"{outcome.name} came out in the place of {row.name}")
             yield _find(part, row, outcome)
     except ClaimError as error:
         # The claim that was searched has no place that its author knows.

@@ -19,6 +19,7 @@ from tempfile import TemporaryDirectory
 from typing import Any
 
 from certify.claim.claim import Claim, read_claim
+from certify.claim.hints import shown
 from certify.claim.parts import FORMATS, GraphList
 from certify.claim.toml import Document, read_document
 from certify.errors import ClaimError, InputError
@@ -115,7 +116,11 @@ def _read_with_first_row(path: Path, document: Document, table: Table) -> Claim:
         try:
             return read_claim(copy)
         except ClaimError as error:
-            raise ClaimError(str(error).replace(str(copy), str(path))) from None
+            text = str(error).replace(str(copy), str(path))
+            raise ClaimError(
+                f"{text}\n  the parameters are those columns of {table.shown} that the rule "
+                f"uses: {', '.join(map(shown, table.parameters)) or 'none'}"
+            ) from None
 
 
 def _check_bounds(claim: Claim, path: Path, table: Table) -> None:

@@ -72,7 +72,7 @@ def find_geng() -> Path | None:
 
 def cubic_graphs(geng: Path, vertices: int, most: int | None = None) -> list[bytes]:
     """Return the connected cubic graphs as lines, or the first of them."""
-    command = [geng, "-q", "-c", "-d3", "-D3", str(vertices)]
+    command: list[str | Path] = [geng, "-q", "-c", "-d3", "-D3", str(vertices)]
     with subprocess.Popen(command, stdout=subprocess.PIPE) as process:
         assert process.stdout is not None
         lines = [line for line, _ in zip(process.stdout, range(most or sys.maxsize), strict=False)]

@@ -114,7 +114,7 @@ def test_what_was_found_on_a_full_disk_is_taken_up(
                 raise OSError(28, "No space left on device")
             file.write(data)
 
-        patch.setattr("certify.evidence.store._write_all", write)
+        patch.setattr("certify.evidence.store.write_all", write)
         with pytest.raises(DiskError, match=r"No space left on device\n  next: make room"):
             run(claim, tmp_path)
     stored = [outcome.stored for outcome in prove(claim).outcomes]

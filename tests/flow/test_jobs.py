@@ -21,10 +21,13 @@ import networkx
 import pytest
 
 from certify.checker import check_folder
+from certify.claim.claim import build_claim
+from certify.claim.toml import parse_document
 from certify.engine.executors import Here
 from certify.errors import InputError
 from certify.evidence.witness import Witness
 from certify.flow import decide_file, prove
+from certify.flow.outcome import Origin
 from certify.flow.settle import settle_all
 from certify.flow.work import ClaimFile, Finding, make_job
 from certify.graph.graph import Graph
@@ -187,10 +190,6 @@ def forged(found: Finding) -> Finding:
     ],
 )  # fmt: skip
 def test_what_a_cluster_sends_is_not_believed(change: Callable[[Finding], Any], said: str) -> None:
-    from certify.claim.claim import build_claim
-    from certify.claim.toml import parse_document
-    from certify.flow.outcome import Origin
-
     claim = build_claim(parse_document(LIST.encode(), "claim.toml"), "claim.toml")
     origin = Origin(claim, 1, b"Dhc\n", "graphs.g6")  # the cycle on five vertices
     job = make_job(ClaimFile.of(claim), origin, Limits())
@@ -199,6 +198,26 @@ def test_what_a_cluster_sends_is_not_believed(change: Callable[[Finding], Any], 
     (outcome,) = settle_all(Liars(change), [(origin, job)])
     assert outcome.record.answer == "open"
     assert said in str(outcome.error)
+
+
+def test_no_file_is_taken_from_a_cluster_that_the_record_does_not_name() -> None:
+    """It would be written under the name that was sent, wherever that leads."""
+    claim = build_claim(parse_document(LIST.encode(), "claim.toml"), "claim.toml")
+    origin = Origin(claim, 1, b"Dhc\n", "graphs.g6")
+    job = make_job(ClaimFile.of(claim), origin, Limits())
+    more = {"../../stray": b"x", "clauses/stray": b"x"}
+    liars = Liars(lambda found: replace(found, files={**found.files, **more}))
+    (outcome,) = settle_all(liars, [(origin, job)])
+    assert (outcome.record.answer, outcome.record.files) == ("exists", {})
+
+    def named(found: Finding) -> Finding:
+        content = json.loads(found.line)
+        content["evidence"]["cnf"] = "../../stray"
+        line = json.dumps(content, sort_keys=True, separators=(",", ":")).encode() + b"\n"
+        return replace(found, line=line, files=more)
+
+    (outcome,) = settle_all(Liars(named), [(origin, job)])
+    assert (outcome.record.answer, outcome.record.files) == ("open", {})
 
 
 def test_a_cluster_gives_the_same_folder_although_a_worker_is_killed(
@@ -357,6 +376,14 @@ def test_graphs_from_elsewhere_do_not_replace_a_list_of_the_user(
     with pytest.raises(InputError, match=r"graphs\.g6: this list is there already"):
         prove(listed, graphs=io.BytesIO(random_graphs(3)))
     assert listed.with_name("graphs.g6").read_bytes() == kept
+    # Nor after a run with that list, whose manifest names it.
+    answers(listed, listed.parent)
+    before = folder_bytes(listed.parent)
+    with pytest.raises(InputError, match=r"graphs\.g6: holds other graphs"):
+        answers(listed, listed.parent, graphs=io.BytesIO(random_graphs(3)))
+    assert {name: folder_bytes(listed.parent)[name] for name in before} == before
+    answers(listed, listed.parent, graphs=io.BytesIO(kept))
+    assert folder_bytes(listed.parent) == before
     for count in (3, 5):
         out = tmp_path / "other"
         assert len(answers(listed, out, graphs=io.BytesIO(random_graphs(count)))) == count

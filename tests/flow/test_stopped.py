@@ -35,7 +35,11 @@ BY_SIGHT = ("witness", "obstruction", "cases")
 
 @dataclass(frozen=True)
 class Change:
-    """From one state of a folder to another. graphs: a list that comes through a pipe."""
+    """From one state of a folder to another.
+
+    graphs: a list that comes through a pipe. apart: the claim lies elsewhere, so that the
+    list in the folder of the evidence may be replaced.
+    """
 
     claim: str
     before: tuple[str, ...] = ()
@@ -43,32 +47,44 @@ class Change:
     files: dict[str, bytes] = field(default_factory=dict)
     graphs: bytes | None = None
     unpacked: bool = False
+    apart: bool = False
 
-    def prepare(self, folder: Path) -> Path:
-        """Write the old state, and return the claim."""
+    def home(self, folder: Path) -> Path:
+        """Return where the claim is."""
+        return folder.parent / "home" if self.apart else folder
+
+    def prepare(self, folder: Path) -> None:
+        """Write the old state."""
         folder.mkdir()
-        path = folder / "claim.toml"
-        path.write_text(self.claim)
+        home = self.home(folder)
+        home.mkdir(exist_ok=True)
+        (home / "claim.toml").write_text(self.claim)
         for name, data in self.files.items():
-            (folder / name).write_bytes(data)
+            (home / name).write_bytes(data)
         if self.before:
-            self.run(path, self.before, None)
+            self.run(folder, self.before, None)
         if self.unpacked:
             unpack(folder)
-        return path
 
-    def run(self, path: Path, kinds: tuple[str, ...], graphs: bytes | None) -> list[bool]:
+    def run(self, folder: Path, kinds: tuple[str, ...], graphs: bytes | None) -> list[bool]:
         """Prove with these kinds; return of each instance whether it was stored before."""
-        limits = Limits(kinds=frozenset(kinds))
-        source = None if graphs is None else io.BytesIO(graphs)
-        return [outcome.stored for outcome in prove(path, limits=limits, graphs=source).outcomes]
+        return self._prove(folder, kinds, graphs, [])
 
-    def redo(self, path: Path) -> None:
+    def redo(self, folder: Path) -> None:
         """Search everything again, and store it."""
-        limits = Limits(kinds=frozenset(self.after))
-        source = None if self.graphs is None else io.BytesIO(self.graphs)
-        for _ in prove(path, limits=limits, graphs=source, redo=["all"]).outcomes:
-            pass
+        self._prove(folder, self.after, self.graphs, ["all"])
+
+    def _prove(
+        self, folder: Path, kinds: tuple[str, ...], graphs: bytes | None, redo: list[str]
+    ) -> list[bool]:
+        run = prove(
+            self.home(folder) / "claim.toml",
+            out=folder,
+            limits=Limits(kinds=frozenset(kinds)),
+            graphs=None if graphs is None else io.BytesIO(graphs),
+            redo=redo,
+        )
+        return [outcome.stored for outcome in run.outcomes]
 
 
 def unpack(folder: Path) -> None:
@@ -100,7 +116,7 @@ CHANGES = {
     "a list through a pipe": Change(LIST_CLAIM, graphs=LIST),
     "another list through a pipe": Change(
         LIST_CLAIM.replace("exists = 3", ""), BY_SIGHT, files={"graphs.g6": LIST},
-        graphs=OTHER_LIST,
+        graphs=OTHER_LIST, apart=True,
     ),
     "another name of the evidence": Change(
         LIST_CLAIM, before=BY_SIGHT, files={"graphs.g6": LIST}, unpacked=True
@@ -126,7 +142,7 @@ def every_stop(change: Change, top: Path, stop: Action) -> Iterator[tuple[int, P
     for at in range(1, 500):
         folder = top / str(at)
         shutil.copytree(first, folder)
-        code = stop_before(folder, at, stop, lambda f=folder: change.redo(f / "claim.toml"))
+        code = stop_before(folder, at, stop, lambda f=folder: change.redo(f))
         yield at, folder, code
         shutil.rmtree(folder)
         if code == DONE:
@@ -143,7 +159,7 @@ def test_stopped_before_every_operation(
     monkeypatch.setattr("os.fsync", lambda handle: None)
     change.prepare(tmp_path / "whole")
     old = read_files(tmp_path / "whole")
-    change.redo(tmp_path / "whole" / "claim.toml")
+    change.redo(tmp_path / "whole")
     new = read_files(tmp_path / "whole")
     assert check_folder_accepts(tmp_path / "whole")
     expected = {"kill": -signal.SIGKILL, "interrupt": INTERRUPTED}[how]
@@ -170,7 +186,7 @@ def test_stopped_before_every_operation(
             manifest = finished["manifest.json"]
             assert manifest in (old["manifest.json"], new["manifest.json"]), at
         known = stored_instances(folder)
-        stored = change.run(folder / "claim.toml", change.after, change.graphs)
+        stored = change.run(folder, change.after, change.graphs)
         # Whatever had been found is taken up; and the end is what it would have been.
         assert sum(stored) >= min(len(known), len(stored)) - (change.graphs == OTHER_LIST) * 4, at
         assert not (folder / ".unfinished").exists(), at

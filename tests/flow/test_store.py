@@ -121,6 +121,50 @@ def test_a_folder_of_another_claim_is_left_alone(
     assert folder_bytes(first.parent) == before
 
 
+@pytest.mark.parametrize("name", ["clauses", "claim.toml"])
+def test_nothing_is_written_or_removed_behind_a_link(
+    name: str, certify: Command, write_claim: Callable[..., Path], tmp_path: Path
+) -> None:
+    claim = write_claim(WITH_CLAUSES)
+    kept, out = tmp_path / "kept", tmp_path / "out"
+    kept.mkdir()
+    out.mkdir()
+    (kept / "precious").write_text("x")
+    (out / name).symlink_to(kept)
+    refused = certify("prove", claim, "--out", out)
+    assert refused.code == 2
+    assert f"{out / name}: is a symbolic link" in refused.err
+    assert folder_bytes(kept) == {"precious": b"x"}
+    assert [path.name for path in out.iterdir()] == [name]
+
+
+def test_a_link_in_the_place_of_evidence_is_replaced(
+    certify: Command, write_claim: Callable[..., Path], tmp_path: Path
+) -> None:
+    """Also when what it leads to is just what would be written: no checker follows it."""
+    claim = write_claim(HOPS)
+    out, kept = tmp_path / "out", tmp_path / "kept"
+    assert certify("prove", claim, "--out", out).code == 0
+    (out / "evidence.jsonl").rename(kept)
+    (out / "evidence.jsonl").symlink_to(kept)
+    assert certify("check", out).code == 3
+    assert certify("prove", claim, "--out", out).code == 0
+    assert certify("check", out).code == 0
+    assert kept.exists()
+
+
+def test_a_claim_that_changes_before_the_folder_is_taken_is_said(
+    write_claim: Callable[..., Path],
+) -> None:
+    """Else the manifest would name the later claim, and the evidence be for the earlier one."""
+    path = write_claim(HOPS)
+    claim = read_claim(path)
+    path.write_bytes(path.read_bytes() + b"# a thought\n")
+    with pytest.raises(InputError, match="has changed just now"), Store(path.parent, claim, path):
+        raise AssertionError
+    assert not (path.parent / "manifest.json").exists()
+
+
 def test_a_folder_that_cannot_be_written_is_said(
     write_claim: Callable[..., Path], tmp_path: Path
 ) -> None:

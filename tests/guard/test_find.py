@@ -54,10 +54,37 @@ def test_a_claim_file_by_name_counts_whatever_is_in_it(tmp_path: Path) -> None:
     assert found.claims == [tmp_path / "claim.toml"]
 
 
-def test_our_own_allowances_and_hidden_files_are_no_claims(tmp_path: Path) -> None:
-    for name in ("guard.toml", ".claim.toml", "claim.toml.bak", "claim.txt"):
+def test_hidden_files_and_those_of_another_ending_are_no_claims(tmp_path: Path) -> None:
+    for name in (".claim.toml", "claim.toml.bak", "claim.txt"):
         (tmp_path / name).write_text(HOPS)
     assert find(tmp_path).claims == []
+
+
+@pytest.mark.parametrize("name", ["guard.toml", "Guard.toml", "GUARD.TOML"])
+def test_allowances_are_no_claim_but_a_claim_of_their_name_is_one(
+    name: str, tmp_path: Path
+) -> None:
+    (tmp_path / name).write_text('open = ["n=31"]\n')
+    assert find(tmp_path).claims == []
+    (tmp_path / name).write_text(HOPS)
+    assert find(tmp_path).claims == [tmp_path / name]
+
+
+def test_links_to_folders_of_folders(tmp_path: Path) -> None:
+    """A claim far behind a link is told at the link; each folder is looked into once."""
+    root, outside = tmp_path / "root", tmp_path / "outside"
+    for folder in (root, outside / "a" / "b", outside / "c"):
+        folder.mkdir(parents=True)
+    (outside / "a" / "b" / "claim.toml").write_text(HOPS)
+    (outside / "a" / "round").symlink_to(outside)
+    (root / "to-c").symlink_to(outside / "c")
+    assert find(root).troubles == []
+    (outside / "c" / "to-a").symlink_to(outside / "a")
+    (trouble,) = find(root).troubles
+    assert trouble.path == root / "to-c" / "to-a"
+    (root / "up").symlink_to(tmp_path)
+    assert {trouble.path.name for trouble in find(root).troubles} <= {"up", "to-a"}
+    assert find(root).claims == []
 
 
 @pytest.mark.parametrize(

@@ -8,8 +8,9 @@ from pathlib import Path
 
 import pytest
 
+from certify.guard.check import FolderGuard, check_evidence
 from tests.checker.folders import lines_of, with_lines
-from tests.guard.conftest import HOPS, Command, Files, put
+from tests.guard.conftest import HOPS, Command, Files, Prove, put
 
 OPEN = ["n=2", "n=3", "n=4", "n=5", "n=6", "n=11"]
 
@@ -123,6 +124,29 @@ def test_open_instances_that_are_allowed_pass(
     assert "8 of 14 instances accepted, 6 open, as allowed" in done.out
     put(root / "a", half_open, guard_toml=f"open = {json.dumps(OPEN[1:])}\n")
     assert certify("guard", root).code == 4
+
+
+def test_an_allowance_does_not_cover_counts_that_are_wrong_already(
+    certify: Command, root: Path, prove_files: Prove
+) -> None:
+    """Eight instances are shown to exist, so whatever is open, two in all is false."""
+    text = HOPS[: HOPS.index("exists = ")]
+    half = frozenset({"witness"})
+    left = 'open = ["n=2", "n=3", "n=4", "n=5", "n=6", "n=11"]'
+    put(root / "false", prove_files(f"{text}exists = 2\n", half), guard_toml=left)
+    put(root / "true", prove_files(f"{text}exists = 8\n", half), guard_toml=left)
+    done = certify("guard", root)
+    assert done.code == 3
+    assert "next: correct the claim" in done.out
+    assert f"failed: {root}/false/claim.toml" in done.out
+    assert f"accepted: {root}/true/claim.toml" in done.out
+
+
+def test_a_check_that_was_broken_off_accepts_nothing(root: Path, hops: Files) -> None:
+    guard = FolderGuard(put(root, hops))
+    next(guard.cases())
+    assert guard.report().state == "failed"
+    assert check_evidence(root).state == "accepted"
 
 
 @pytest.mark.parametrize("name", ["n=7", "n=15", "7", "only"])

@@ -193,11 +193,10 @@ async function* checkFolder(read) {
     }
     need(lines.next().done, `${files.evidence}: a line too many`);
     const rest = sums.accepted < sums.instances ? "an instance is not accepted" : null;
-    if (rest === null || onlyOpen) files.checkAllUsed();
-    if (rest !== null) throw onlyOpen ? new LeftOpen(rest) : new Rejected(rest);
-    for (const [answer, count] of claim.answers.counts) {
-      need(sums[answer] === count, `the claim says ${answer} for ${count} instances, and the evidence shows it for ${sums[answer]}`);
-    }
+    if (rest !== null && !onlyOpen) throw new Rejected(rest);
+    checkCounts(claim.answers.counts, sums, sums.instances - sums.accepted);
+    files.checkAllUsed();
+    if (rest !== null) throw new LeftOpen(rest);
     // Accepted, here and nowhere else: every instance has exactly one record, in order, every
     // record is accepted, the answers agree with the claim, and every listed file was needed.
     yield { final: true, verdict: "accepted", reason: null, onlyOpen: false, ...sums };
@@ -205,6 +204,20 @@ async function* checkFolder(read) {
     if (!(error instanceof Rejected)) throw error;
     yield { final: true, verdict: "rejected", reason: error.message, onlyOpen: error instanceof LeftOpen, ...sums };
   }
+}
+
+// Counts are wrong, whatever the answers to what is open will be, when they need fewer than are
+// shown, or more than are open.
+function checkCounts(counts, sums, open) {
+  let missing = 0;
+  for (const [answer, count] of counts) {
+    need(
+      sums[answer] <= count && count <= sums[answer] + open,
+      `the claim says ${answer} for ${count} instances, and the evidence shows it for ${sums[answer]}`,
+    );
+    missing += count - sums[answer];
+  }
+  need(counts.size < 2 || missing === open, "the counts of the claim do not add up to the number of instances");
 }
 
 // `read` for files that are already there: an object or a Map of name -> Uint8Array.
