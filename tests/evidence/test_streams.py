@@ -79,15 +79,16 @@ def test_a_pipe_is_read_as_it_comes(tmp_path: Path) -> None:
 
 def test_a_second_run_takes_what_holds_for_the_graph_that_is_there_now(tmp_path: Path) -> None:
     claim = write_claim(tmp_path)
-    assert run(claim, LIST) == [False] * 4
-    assert run(claim, LIST) == [True] * 4
+    out = tmp_path / "out"
+    assert run(claim, LIST, out) == [False] * 4
+    assert run(claim, LIST, out) == [True] * 4
     lines = LIST.splitlines(keepends=True)
     # Another first graph, which its old evidence does not fit; and one graph more.
     changed = b"".join([b"Dhc\n", *lines[1:], b"C~\n"])
-    assert run(claim, changed) == [False, True, True, True, False]
-    assert accepted(tmp_path)
-    assert run(claim, b"".join(lines[:2])) == [False, True]
-    assert accepted(tmp_path)
+    assert run(claim, changed, out) == [False, True, True, True, False]
+    assert accepted(out)
+    assert run(claim, b"".join(lines[:2]), out) == [False, True]
+    assert accepted(out)
 
 
 def test_a_list_that_breaks_off_can_be_taken_up(tmp_path: Path) -> None:
