@@ -9,7 +9,14 @@ import click
 from certify.commands.group import commands, existing_folder
 from certify.errors import InputError, OpenError
 from certify.report.accepted import need_accepted
-from certify.report.theorem.coq import compile_kernel, find_coq, prove_theorems, write_folder
+from certify.report.kernel.program import cache_folder
+from certify.report.theorem.coq import (
+    compile_kernel,
+    find_coq,
+    kernel_place,
+    prove_theorems,
+    write_folder,
+)
 from certify.report.theorem.sheet import Sheet, write_sheet
 
 
@@ -31,6 +38,7 @@ def theorem_command(folder: Path, instance: str | None, out: Path, write_only: b
     Writes a file of theorems with the kernel they rest on, and runs coqc (Coq 8.16): for
     each impossible instance that the path or cycle does not exist, and for the
     whole table for which instances it does; or for INSTANCE alone (n=18, m=3,n=4, or 17).
+    Of an endless claim the theorem is about all n.
     Whoever doubts then believes Coq, kernel/Statement.v and the top of that file.
     """
     need_accepted(folder, may_be_open=True)
@@ -41,22 +49,24 @@ def theorem_command(folder: Path, instance: str | None, out: Path, write_only: b
         click.echo(f"  no theorem for {name}: {reason}")
     if instance is None and not sheet.table:
         click.echo("  so there is none for the whole table either")
-    if not write_only:
-        _compile(out, sheet)
+    if sheet.theorems and not write_only:
+        _compile(path, sheet)
     if sheet.not_taken:
         raise OpenError(f"no theorem for {_count(len(sheet.not_taken), 'instance')}, as said above")
 
 
-def _compile(out: Path, sheet: Sheet) -> None:
+def _compile(path: Path, sheet: Sheet) -> None:
     coq = find_coq()
     if coq is None:
         raise InputError(
             "coqc is not on the PATH: the theorems are written and not proved\n"
-            f"  next: install Coq 8.16 (Debian: apt-get install coq), then: sh {out / 'compile'}"
+            f"  next: install Coq 8.16 (Debian: apt-get install coq), then: "
+            f"sh {path.parent / 'compile'}"
         )
-    for name in compile_kernel(out, coq):
+    kernel = kernel_place(cache_folder(), coq)
+    for name in compile_kernel(kernel, coq):
         click.echo(f"  compiling the kernel: {name}")
-    proved = prove_theorems(out, coq, sheet)
+    proved = prove_theorems(path, coq, sheet, kernel)
     click.echo(f"{proved.path}: {_count(len(proved.theorems), 'theorem')} proved, nothing assumed")
 
 

@@ -13,7 +13,8 @@ from certify.claim.language import INTEGER, TRUTH, read_expression
 from certify.claim.names import Scope
 from certify.claim.predicates import PREDICATES
 from certify.errors import ClaimError
-from certify.report.theorem.gallina import write_name, write_rule, write_vertex
+from certify.report.theorem import sheet
+from certify.report.theorem.gallina import write_comment, write_name, write_rule, write_vertex
 
 SCOPE = Scope(parameters=("m", "n"), vertices=("a", "b"))
 CELLS = Scope(parameters=("n",), vertices=("a", "b"), coordinates=("x", "end"))
@@ -28,19 +29,23 @@ POINTS = 12
 RULES = 150
 
 
-def compute(compiled: Path, folder: Path, terms: list[str]) -> list[str]:
-    """Return what Coq says that terms of type `bool` are."""
-    file = folder / "values.v"
-    listed = ";\n ".join(terms)
-    file.write_text(
-        f"{HEAD}Definition values : list bool := [{listed}].\nEval vm_compute in values.\n"
-    )
+def run_coq(compiled: Path, folder: Path, text: str) -> str:
+    """Return what Coq prints about a file; it has to be in order."""
+    file = folder / "text.v"
+    file.write_text(text)
     done = subprocess.run(
         ["coqc", "-q", "-Q", str(compiled), "Certify", str(file)],
         capture_output=True, text=True, check=False,
     )  # fmt: skip
     assert done.returncode == 0, done.stderr
-    return re.findall("true|false", done.stdout)
+    return done.stdout
+
+
+def compute(compiled: Path, folder: Path, terms: list[str]) -> list[str]:
+    """Return what Coq says that terms of type `bool` are."""
+    listed = ";\n ".join(terms)
+    text = f"{HEAD}Definition values : list bool := [{listed}].\nEval vm_compute in values.\n"
+    return re.findall("true|false", run_coq(compiled, folder, text))
 
 
 def draw_integer(chance: random.Random, depth: int) -> str:
@@ -110,15 +115,54 @@ def test_random_rules_have_the_same_values(compiled: Path, tmp_path: Path) -> No
 
 
 def test_names_that_coq_or_the_files_use_get_a_prime() -> None:
-    assert [write_name(name) for name in ("n", "end", "Q", "a_x", "square_", "fun", "rows")] == [
-        "n",
-        "end'",
-        "Q'",
-        "a_x'",
-        "square_",
-        "fun'",
-        "rows",
+    plain = ["n", "m", "k", "rows", "size2", "N"]
+    assert [write_name(name) for name in plain] == plain
+    taken = ["end", "Q", "h", "row", "fun", "more", "nil", "mod", "O", "a_x", "n_1", "IF", "Some"]
+    assert [write_name(name) for name in taken] == [f"{name}'" for name in taken]
+
+
+def test_no_name_that_coq_knows_stands_for_something_else(compiled: Path, tmp_path: Path) -> None:
+    """Every name in sight is taken for a parameter once, in each place where one can stand.
+
+    In a pattern a constructor is no variable; a keyword is none anywhere.
+    """
+    found = run_coq(compiled, tmp_path, f"{sheet.HEAD}Search _.\nPrint Grammar constr.\n")
+    names = set(re.findall(r"^([A-Za-z]\w*):", found, re.M | re.A))
+    names |= set(re.findall(r'"([A-Za-z]\w*)"', found, re.A))
+    assert {"Some", "more", "nil", "conj", "forall", "mod", "extend"} <= names
+    assert len(names) > 1000
+    variables = sorted(set(map(write_name, names)))
+    assert len(variables) == len(names)
+    checks = [
+        f"Check (fun row : Z * Z => let '({v}, x1) := row in filter (Z.eqb {v}) (range 1 x1)).\n"
+        f"Check (forall {v} x1, 1 <= {v} <= 2 -> exists h, h = {v} + x1)."
+        for v in variables
     ]
+    run_coq(compiled, tmp_path, sheet.HEAD + "\n".join(checks))
+
+
+@pytest.mark.parametrize(
+    "text",
+    [
+        "ends *) Axiom easy : False. (* it",
+        "(*) and **) and (**) and ( *",
+        'a text " that does not end',
+        "two\nlines\u2028and \x00\x07\x1b controls",
+        "turned \u202e around",
+        "*" * 9 + ")" * 9 + "(" * 9 + "*" * 9,
+        "back\\slash, caf\u00e9 \u2014 n\u00b2",
+    ],
+)
+def test_no_words_end_a_comment(text: str, compiled: Path, tmp_path: Path) -> None:
+    comment = write_comment(text)
+    assert comment.isprintable()
+    said = run_coq(compiled, tmp_path, f"(** * {comment} *)\n(** {comment}, {comment} *)\nCheck I.")
+    assert said.split() == ["I", ":", "True"]
+
+
+def test_words_that_do_no_harm_stay_as_they_are() -> None:
+    for text in ("a * b + 1", "Kn\u00f6del's graphs (n = 2^k)", "2 ** n in {1, 4}"):
+        assert write_comment(text) == text
 
 
 def test_coordinates_are_variables_of_a_pattern(compiled: Path, tmp_path: Path) -> None:

@@ -17,7 +17,7 @@ from certify.checker import check_folder
 from certify.claim.claim import read_claim
 from certify.errors import ContradictionError
 from certify.flow import prove
-from certify.report.theorem.coq import compile_kernel, find_coq, prove_theorems, write_folder
+from certify.report.theorem.coq import find_coq, prove_theorems
 from certify.report.theorem.sheet import Sheet, write_sheet
 from certify.search.ladder import Limits
 from tests.kernel.conftest import ROOT
@@ -37,17 +37,12 @@ Prove = Callable[[Path, str | None], Sheet]
 @pytest.fixture
 def prove_sheet(compiled: Path, tmp_path: Path) -> Prove:
     """Return a function that has Coq prove the theorems of a folder."""
-    out = tmp_path / "theorem"
-    out.mkdir()
-    (out / "kernel").symlink_to(compiled, target_is_directory=True)
 
     def run(folder: Path, wanted: str | None = None) -> Sheet:
         sheet = write_sheet(folder, wanted)
-        write_folder(out, [sheet])
         coq = find_coq()
         assert coq is not None
-        assert list(compile_kernel(out, coq)) == []
-        proved = prove_theorems(out, coq, sheet)
+        proved = prove_theorems(tmp_path / f"{sheet.name}.v", coq, sheet, compiled)
         assert list(proved.theorems) == sheet.theorems
         assert sheet.table
         assert not sheet.not_taken
@@ -179,10 +174,8 @@ def test_what_is_not_so_does_not_compile(
     sheet = write_sheet(ROOT / "proofs" / "canal-locks")
     assert old in sheet.text
     sheet.text = sheet.text.replace(old, new)
-    (tmp_path / "kernel").symlink_to(compiled, target_is_directory=True)
-    write_folder(tmp_path, [sheet])
     with pytest.raises(ContradictionError, match="Coq refuses it"):
-        prove_theorems(tmp_path, shutil.which("coqc") or "", sheet)
+        prove_theorems(tmp_path / "it.v", shutil.which("coqc") or "", sheet, compiled)
 
 
 def test_what_rests_on_an_axiom_is_refused(compiled: Path, tmp_path: Path) -> None:
@@ -193,7 +186,5 @@ def test_what_rests_on_an_axiom_is_refused(compiled: Path, tmp_path: Path) -> No
         "Theorem impossible_n_16 : ~ exists h, ham_path (Q 16) h.\nProof. exact easy. Qed.\n"
         "Theorem unused : ~ exists h, ham_path (Q 16) h.",
     )
-    (tmp_path / "kernel").symlink_to(compiled, target_is_directory=True)
-    write_folder(tmp_path, [sheet])
     with pytest.raises(ContradictionError, match=r"assumes something: Axioms:\seasy"):
-        prove_theorems(tmp_path, shutil.which("coqc") or "", sheet)
+        prove_theorems(tmp_path / "it.v", shutil.which("coqc") or "", sheet, compiled)

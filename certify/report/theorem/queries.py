@@ -127,7 +127,8 @@ class Family:
         if answers.truth is None:
             found = ";\n     ".join(self.row_of(key) for key in existing)
             test = "member row" if len(self.parameters) == 1 else "holds (same row)"
-            return f"(** Not as claimed: as found. *)\n{head}{test}\n    [{found}]."
+            listed = f"{test}\n    [{found}]" if found else "false"
+            return f"(** Not as claimed: as found. *)\n{head}{listed}."
         if isinstance(answers.truth, bool):
             return f"{head}{'true' if answers.truth != answers.inverted else 'false'}."
         text = write_rule(answers.truth)

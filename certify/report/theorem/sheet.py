@@ -2,7 +2,8 @@
 
 A theorem for each impossible instance says `~ exists h, ham_path (Q 24) h`, of queries
 that are defined at the top of the file. When every instance has its certificate, one
-theorem more says for the whole table where the object exists, or for how many graphs.
+theorem more says for the whole table where the object exists, or for how many graphs. Of an
+endless claim there is a theorem for each row, about all n (endless.py).
 """
 
 from __future__ import annotations
@@ -23,10 +24,12 @@ from certify.errors import InputError
 from certify.evidence.lines import claim_name, read_evidence
 from certify.graph.build import instances
 from certify.report.theorem.certificate import NotTakenError, write_certificate
-from certify.report.theorem.gallina import write_comment
+from certify.report.theorem.endless import HEAD as ENDLESS_HEAD
+from certify.report.theorem.endless import write_endless
+from certify.report.theorem.gallina import write_comment, write_name
 from certify.report.theorem.queries import Family, define_graph
 
-_HEAD = """\
+HEAD = """\
 From Coq Require Import Bool List ZArith String.
 From Certify Require Import Packed Statement Rules RulesSpec EdgeGraph Graph6 Normal Certificate
   Table.
@@ -50,7 +53,8 @@ class Sheet:
 
     name: the file's, without ending. text: what it holds. theorems: their names.
     not_taken: the instances that have no theorem, each with the reason.
-    table: whether there is a theorem about the whole table.
+    table: whether there is a theorem about the whole table. searched: whether Coq searches for a
+    part of the proof, so that it may refuse what is so.
     """
 
     name: str
@@ -58,29 +62,45 @@ class Sheet:
     theorems: list[str]
     not_taken: dict[str, str]
     table: bool
+    searched: bool = False
 
 
 def write_sheet(folder: Path, wanted: str | None = None) -> Sheet:
     """Write the theorems of a folder that the checker has accepted.
 
     wanted: one instance, as messages write it; None: all, and the table.
-    Errors: InputError when there is no such instance, or the claim is endless.
+    Errors: InputError when there is no such instance.
     Cost: linear in the evidence, which is held in memory once, as text.
     """
     claim = read_claim(folder / claim_name(folder))
-    if claim.growing is not None:
-        raise InputError(
-            f"{folder}: the kernel does not take endless claims yet; nothing was written\n"
-            f"  next: give {claim.growing} an upper end, for a theorem about that table"
-        )
     title = folder.resolve().name + (f" {wanted}" if wanted else "")
-    sheet = _Writer(claim, folder, wanted).write(_identifier(title))
+    if claim.growing is not None:
+        sheet = _write_endless(claim, folder, wanted, _identifier(title))
+    else:
+        sheet = _Writer(claim, folder, wanted).write(_identifier(title))
     if not (sheet.theorems or sheet.not_taken):
         raise InputError(
             f"{folder}: there is no instance {wanted!r}; write n=18, m=3,n=4, "
-            "or 17 for a graph of a list"
+            "17 for a graph of a list, or n=2.. for an endless claim"
         )
     return sheet
+
+
+def _write_endless(claim: Claim, folder: Path, wanted: str | None, name: str) -> Sheet:
+    """Write the theorems of an endless claim: one for each row, about all n."""
+    written = write_endless(claim, folder, wanted)
+    title = write_comment(claim.title) or "A claim without a title"
+    growing = write_name(str(claim.growing))
+    comment = (
+        f"(** * {title}\n\n    For all {growing}, without an end.\n"
+        "    To be read are the definitions of Q and claimed, and the theorems, and of the kernel\n"
+        "    - Statement.v: what a Hamiltonian path or cycle is\n"
+        "    - Rules.v, or in its place RulesSpec.v: what the words of a rule mean *)"
+    )
+    parts = [*written.parts, _gather(written.theorems)]
+    text = f"{comment}\n{ENDLESS_HEAD}\n" + "\n\n".join(parts) + "\n"
+    whole = not written.not_taken
+    return Sheet(name, text, written.theorems, written.not_taken, whole, searched=True)
 
 
 def _identifier(text: str) -> str:
@@ -141,7 +161,7 @@ class _Writer:
         elif whole and family is None:
             theorems.append(self._count("graphs", len(existing)))
         self.parts.append(_gather(theorems))
-        text = f"{self._comment(rows)}\n{_HEAD}\n" + "\n\n".join(self.parts) + "\n"
+        text = f"{self._comment(rows)}\n{HEAD}\n" + "\n\n".join(self.parts) + "\n"
         not_taken = {name_key(row.key): row.reason for row in rows if row.definition is None}
         return Sheet(name, text, theorems, not_taken, whole)
 
@@ -181,7 +201,7 @@ class _Writer:
         if self._by_rule:
             yield "Rules.v, or in its place RulesSpec.v: what the words of a rule mean"
         for word, line in (
-            ('graph6 "', "Graph6.v: which graph a text is"),
+            ('graph6 "', "Graph6.v: which graph a text of graph6 or sparse6 is"),
             (
                 "edge_graph ",
                 "EdgeGraph.v: edge_graph, of so many vertices 0, 1, ..., and its edges",
@@ -232,9 +252,10 @@ class _Writer:
         name = f"{answer}_{row.identifier}"
         sign = "~ " if answer == "impossible" else ""
         lemma = f"{self._structure}_{answer}"
+        query = f"({row.query})" if " " in row.query else row.query
         self.parts.append(
-            f"Theorem {name} : {sign}exists h, ham_{self._structure} ({row.query}) h.\n"
-            f"Proof. apply ({lemma} ({row.query}) certificate_{row.identifier}). "
+            f"Theorem {name} : {sign}exists h, ham_{self._structure} {query} h.\n"
+            f"Proof. apply ({lemma} {query} certificate_{row.identifier}). "
             "vm_cast_no_check (eq_refl true). Qed."
         )
         return name
@@ -252,14 +273,14 @@ class _Writer:
             "  - vm_cast_no_check (eq_refl true).\n  - in_table.\nQed."
         )
         counts = self.claim.answers.counts
-        return ["table", *([self._count("map Q instances", existing)] if counts else [])]
+        return ["table", *([self._count("(map Q instances)", existing)] if counts else [])]
 
     def _count(self, queries: str, existing: int) -> str:
         """State of how many queries the object exists."""
         self.parts.append(
             f"Theorem count :\n  counted (fun Q => exists h, ham_{self._structure} Q h) "
-            f"({queries}) {existing}%nat.\n"
-            f"Proof.\n  apply ({self._structure}_count ({queries}) certificates).\n"
+            f"{queries} {existing}%nat.\n"
+            f"Proof.\n  apply ({self._structure}_count {queries} certificates).\n"
             f"  vm_cast_no_check (eq_refl (Some {existing}%nat)).\nQed."
         )
         return "count"
