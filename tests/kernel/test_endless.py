@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from collections.abc import Callable
+from dataclasses import replace
 from pathlib import Path
 
 import pytest
@@ -169,8 +170,7 @@ def test_wrong_numbers_are_not_proved(
     coq = find_coq()
     assert coq is not None
     assert old in sheet.text
-    text = sheet.text.replace(old, new)
-    twin = Sheet(sheet.name, text, sheet.theorems, sheet.not_taken, sheet.table)
+    twin = replace(sheet, text=sheet.text.replace(old, new))
     with pytest.raises(OpenError, match="Coq does not prove it"):
         prove_theorems(tmp_path / "twin.v", coq, twin, compiled)
 
