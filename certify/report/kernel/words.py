@@ -48,7 +48,7 @@ def write_instance(claim: Claim, instance: Instance, record: object, read: Read)
     if (answer, kind) == ("open", "none"):
         raise NotTakenError("left open: there is no evidence")
     if (answer, kind) == ("settled", "endless"):
-        raise NotTakenError("endless evidence")
+        raise NotTakenError("endless evidence, which certify theorem proves")
     if (answer == "exists") != (kind == "witness") or answer not in ("exists", "impossible"):
         raise RefusedError(f"{kind!r} is no evidence for {answer!r}")
     named = name_vertices(claim, instance.key, graph)
